@@ -14,7 +14,11 @@ export const MAX_VOLUMES = 20_000;
 /** Longest run or latest onset that a document may hold: six hours, µs. */
 export const MAX_MICROS = 6 * 3600 * 1_000_000;
 
-const id = z.string().regex(/^[A-Za-z0-9_-]{6,40}$/, 'an id of 6 to 40 letters, digits, - or _');
+/** Ids are used as keys of plain objects, so names that every object inherits are refused. */
+const id = z
+  .string()
+  .regex(/^[A-Za-z0-9][A-Za-z0-9_-]{5,39}$/, 'an id of 6 to 40 letters, digits, - or _')
+  .refine((text) => !(text in Object.prototype), 'an id that is not the name of an object property');
 const sha256 = z.string().regex(/^[0-9a-f]{64}$/, 'a SHA-256 in hex');
 const micros = z.number().int('whole microseconds').min(-MAX_MICROS).max(MAX_MICROS);
 const length = micros.min(0, 'a duration is 0 or more');
@@ -38,7 +42,7 @@ export const CONDITION_PATTERNS = [
 
 export const conditionSchema = z.strictObject({
   id,
-  name: name(),
+  name: name(300),
   description: words(2000).default(''),
   /** HED string; checked on export. */
   hed: words(4000).default(''),
