@@ -9,7 +9,8 @@ import { bytesToHex, utf8ToBytes } from '@noble/hashes/utils';
 export function canonicalJson(value: unknown): string {
   if (value === null || typeof value === 'boolean' || typeof value === 'string') return JSON.stringify(value);
   if (typeof value === 'number') {
-    if (!Number.isFinite(value)) throw new TypeError(`Canonical JSON holds finite numbers only, not ${value}.`);
+    if (!Number.isFinite(value))
+      throw new TypeError(`Canonical JSON holds finite numbers only, not ${value}.`);
     return JSON.stringify(value);
   }
   if (Array.isArray(value)) return `[${value.map((v) => canonicalJson(v ?? null)).join(',')}]`;

@@ -80,7 +80,12 @@ export function newCondition(existing: readonly Condition[], name?: string): Con
   const shift = Math.floor(existing.length / CONDITION_COLOURS.length);
   return {
     id: newId(),
-    name: name ?? freeName('condition', existing.map((c) => c.name)),
+    name:
+      name ??
+      freeName(
+        'condition',
+        existing.map((c) => c.name)
+      ),
     description: '',
     hed: '',
     colour: CONDITION_COLOURS[k]!,

@@ -84,7 +84,11 @@ export const briefSchema = z.strictObject({
   /** Shown to the participant before the run; `{response name}` is replaced by its finger. */
   instructions: words(10_000),
   /** TR the task is planned for, µs. */
-  tr: z.number().int('whole microseconds').gt(0, 'TR must be more than 0 s').max(60_000_000, 'TR is at most 60 s'),
+  tr: z
+    .number()
+    .int('whole microseconds')
+    .gt(0, 'TR must be more than 0 s')
+    .max(60_000_000, 'TR is at most 60 s'),
   /** Default number of stored volumes of a new run. */
   volumes: z.number().int().min(1).max(MAX_VOLUMES),
   /** High-pass cutoff, seconds. */

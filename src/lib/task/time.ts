@@ -34,7 +34,8 @@ export function parseSeconds(text: string): { micros: number; exact: boolean } |
   }
   const decimals = (m[3] ?? '').padEnd(6, '0');
   const rest = decimals.slice(6);
-  const size = Number(m[2] ?? 0) * MICROS + Number(decimals.slice(0, 6)) + (Number(`0.${rest || 0}`) >= 0.5 ? 1 : 0);
+  const size =
+    Number(m[2] ?? 0) * MICROS + Number(decimals.slice(0, 6)) + (Number(`0.${rest || 0}`) >= 0.5 ? 1 : 0);
   if (size > Number.MAX_SAFE_INTEGER) return null;
   return { micros: m[1] === '-' && size !== 0 ? -size : size, exact: !/[1-9]/.test(rest) };
 }

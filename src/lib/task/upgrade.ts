@@ -21,7 +21,10 @@ export function readDocument(value: unknown): Reading {
   let raw = value as Record<string, unknown>;
   const format = raw.format;
   if (typeof format !== 'number' || !Number.isInteger(format) || format < 1)
-    return { ok: false, problems: [{ path: 'format', message: `expected a whole number from 1 to ${FORMAT}` }] };
+    return {
+      ok: false,
+      problems: [{ path: 'format', message: `expected a whole number from 1 to ${FORMAT}` }]
+    };
   if (format > FORMAT)
     return {
       ok: false,
@@ -53,13 +56,41 @@ function referenceProblems(d: TaskDocument): Problem[] {
     return seen;
   };
   const { brief } = d;
-  const conditions = unique('brief.conditions', brief.conditions.map((c) => c.id), 'condition id');
-  unique('brief.conditions', brief.conditions.map((c) => c.name), 'condition name');
-  unique('brief.contrasts', brief.contrasts.map((c) => c.id), 'contrast id');
-  const responses = unique('brief.responses', brief.responses.map((r) => r.id), 'response id');
-  const cards = unique('cards', d.cards.map((c) => c.id), 'card id');
-  unique('runs', d.runs.map((r) => r.id), 'run id');
-  unique('lists', d.lists.map((l) => l.id), 'list id');
+  const conditions = unique(
+    'brief.conditions',
+    brief.conditions.map((c) => c.id),
+    'condition id'
+  );
+  unique(
+    'brief.conditions',
+    brief.conditions.map((c) => c.name),
+    'condition name'
+  );
+  unique(
+    'brief.contrasts',
+    brief.contrasts.map((c) => c.id),
+    'contrast id'
+  );
+  const responses = unique(
+    'brief.responses',
+    brief.responses.map((r) => r.id),
+    'response id'
+  );
+  const cards = unique(
+    'cards',
+    d.cards.map((c) => c.id),
+    'card id'
+  );
+  unique(
+    'runs',
+    d.runs.map((r) => r.id),
+    'run id'
+  );
+  unique(
+    'lists',
+    d.lists.map((l) => l.id),
+    'list id'
+  );
 
   brief.contrasts.forEach((c, i) => {
     for (const key of Object.keys(c.weights))
@@ -75,8 +106,16 @@ function referenceProblems(d: TaskDocument): Problem[] {
         path: `cards.${i}.condition`,
         message: `card ‘${card.name}’ names a condition that the brief does not have`
       });
-    unique(`cards.${i}.items`, card.items.map((x) => x.id), 'item id');
-    unique(`cards.${i}.windows`, card.windows.map((x) => x.id), 'window id');
+    unique(
+      `cards.${i}.items`,
+      card.items.map((x) => x.id),
+      'item id'
+    );
+    unique(
+      `cards.${i}.windows`,
+      card.windows.map((x) => x.id),
+      'window id'
+    );
     card.windows.forEach((w, j) => {
       for (const r of w.correct === null ? w.allowed : [...w.allowed, w.correct])
         if (!responses.has(r))
@@ -87,7 +126,11 @@ function referenceProblems(d: TaskDocument): Problem[] {
     });
   });
   d.runs.forEach((run, i) => {
-    unique(`runs.${i}.trials`, run.trials.map((t) => t.id), 'trial id');
+    unique(
+      `runs.${i}.trials`,
+      run.trials.map((t) => t.id),
+      'trial id'
+    );
     run.trials.forEach((t, j) => {
       if (!cards.has(t.card))
         problems.push({
