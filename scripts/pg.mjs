@@ -34,8 +34,8 @@ export const APP = 'ebbline_app';
 export const QUEUE_SCHEMA = 'pgboss';
 
 const project = resolve(dirname(fileURLToPath(import.meta.url)), '..');
-/** Where a project keeps its own data; EBBLINE_DATA moves it. */
-export const dataFolder = () => resolve(project, process.env.EBBLINE_DATA || '.data');
+/** Where a project keeps its own data; DATA_DIR moves it. */
+export const dataFolder = () => resolve(project, process.env.DATA_DIR || '.data');
 
 const wait = (ms) => new Promise((done) => setTimeout(done, ms));
 const secret = () => randomBytes(24).toString('base64url');
@@ -65,7 +65,7 @@ export function checkDataOwner(folder = dataFolder()) {
   if (owner === null || owner === process.getuid()) return;
   throw new PlainError(
     `The data folder ${folder} belongs to the user ${nameOfUser(owner)}, and you are ${nameOfUser(process.getuid())}: ` +
-      `start Ebbline as ${nameOfUser(owner)}, or set EBBLINE_DATA to a folder of your own.`
+      `start Ebbline as ${nameOfUser(owner)}, or set DATA_DIR to a folder of your own.`
   );
 }
 
@@ -96,7 +96,7 @@ function placeCluster(folder) {
   mkdirSync(outside, { recursive: true, mode: 0o755 });
   if (!canDatabaseUserEnter(outside))
     throw new PlainError(
-      `The user postgres can enter neither ${folder} nor ${outside}; set EBBLINE_DATA to a folder it can enter.`
+      `The user postgres can enter neither ${folder} nor ${outside}; set DATA_DIR to a folder it can enter.`
     );
   return join(outside, 'postgresql');
 }
