@@ -71,7 +71,7 @@ function run(words, command, args) {
 /** `npm ci`, when the lock file or Node changed since the last one. */
 function installModules() {
   const stamp = 'node_modules/.setup-stamp';
-  const want = hashOf(['package-lock.json', 'package.json']) + process.version;
+  const want = hashOf(['package-lock.json']) + process.version;
   if (existsSync(stamp) && readFileSync(stamp, 'utf8') === want) return;
   run('Installing packages', 'npm', ['ci', '--include=dev', '--no-audit', '--no-fund', '--loglevel=error']);
   writeFileSync(stamp, want);
