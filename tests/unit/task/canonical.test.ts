@@ -28,7 +28,7 @@ describe('canonical JSON', () => {
       'Emoji: Grinning Face',
       'Hebrew Letter Dalet With Dagesh'
     ]);
-    expect(canonicalJson([333333333.33333329, 1e30, 4.5, 2e-3, 1e-27, -0])).toBe(
+    expect(canonicalJson([Number('333333333.33333329'), 1e30, 4.5, 2e-3, 1e-27, -0])).toBe(
       '[333333333.3333333,1e+30,4.5,0.002,1e-27,0]'
     );
   });
