@@ -1,0 +1,63 @@
+/**
+ * One vocabulary of refusals. Services throw them; pages show them as they are, the API's wrapper prints them as
+ * `{ error: { code, message, details } }`. A message names the value, what was expected and the way out.
+ */
+import { error, isHttpError, type HttpError } from '@sveltejs/kit';
+import type { z } from 'zod';
+
+export const CODES = {
+  400: 'malformed',
+  401: 'not_signed_in',
+  403: 'not_allowed',
+  404: 'not_found',
+  409: 'conflict',
+  412: 'stale',
+  413: 'too_large',
+  415: 'wrong_type',
+  422: 'breaks_a_rule',
+  428: 'if_match_missing',
+  429: 'too_many'
+} as const;
+export type RefusalStatus = keyof typeof CODES;
+
+export interface Detail {
+  path: string;
+  message: string;
+}
+
+export function refuse(status: RefusalStatus, message: string, more: Partial<App.Error> = {}): never {
+  error(status, { code: CODES[status], message, ...more });
+}
+
+/** What came from outside, parsed; 422 with every field that breaks a rule. */
+export function accept<T>(schema: z.ZodType<T>, value: unknown): T {
+  const parsed = schema.safeParse(value);
+  if (parsed.success) return parsed.data;
+  const details = parsed.error.issues.map((i) => ({
+    path: i.path.map(String).join('.'),
+    message: i.message
+  }));
+  const first = details[0]!;
+  return refuse(422, `Expected ${first.message}${first.path ? ` in the field ‘${first.path}’` : ''}.`, {
+    details
+  });
+}
+
+/** The same words for what is not there and for what belongs to somebody else. */
+export const notFound = (what = 'page'): never =>
+  refuse(
+    404,
+    `There is no such ${what}, or it is not yours to see. Check the address, or go back to your labs.`
+  );
+
+/** A refusal that a form may show beside its fields; anything else is thrown on. */
+export function refusalOf(thrown: unknown): HttpError {
+  if (isHttpError(thrown) && thrown.status < 500) return thrown;
+  throw thrown;
+}
+
+/** PostgreSQL's unique_violation on the named constraint or index. */
+export const isTaken = (thrown: unknown, constraint: string): boolean =>
+  thrown instanceof Error &&
+  (thrown as { code?: string }).code === '23505' &&
+  (thrown as { constraint?: string }).constraint === constraint;
