@@ -26,6 +26,15 @@ export default defineConfig({
           include: ['tests/db/**/*.test.ts'],
           globalSetup: ['tests/db/global-setup.ts']
         }
+      },
+      {
+        extends: true,
+        test: {
+          name: 'long',
+          environment: 'node',
+          include: ['tests/long/**/*.test.ts'],
+          testTimeout: 600_000
+        }
       }
     ]
   }
