@@ -11,20 +11,26 @@ export function consoleCard(input: PackInput, texts: BundleTexts): string {
   const { labels } = texts;
   const cards = document.runs.map((run, place) => {
     const facts = scanFacts(document, run, profile);
-    const rows: [name: string, value: string, isMain?: boolean][] = [
-      [labels.volumesToType, texts.volumesToType(facts), true],
-      [labels.tr, `${facts.tr} s`, true],
-      [labels.total, facts.total, true],
+    const main: [name: string, value: string, note: string | null][] = [
+      [labels.volumesToType, String(facts.volumesToType), texts.dummiesNote(facts)],
+      [labels.tr, `${facts.tr} s`, null],
+      [labels.total, facts.total, null]
+    ];
+    const rows: [name: string, value: string][] = [
       [labels.storedVolumes, String(facts.storedVolumes)],
       [labels.dummiesWithPulses, String(facts.dummiesWithPulses)],
       [labels.silentDummies, texts.silentDummies(facts.silentDummies)],
       [labels.pulses, `${texts.pulseSetting(profile)}. ${texts.zero(facts)}`],
       [labels.triggerKey, `${keyInWords(profile.triggerKey)}, code ${profile.triggerKey}`]
     ];
-    const lines = rows.map(
-      ([name, value, isMain]) =>
-        `<tr${isMain ? ' class="main"' : ''}><th scope="row">${escapeHtml(name)}</th><td>${escapeHtml(value)}</td></tr>`
-    );
+    const head = (name: string) => `<th scope="row">${escapeHtml(name)}</th>`;
+    const lines = [
+      ...main.map(([name, value, note]) => {
+        const small = note === null ? '' : `<small>${escapeHtml(note)}</small>`;
+        return `<tr class="main">${head(name)}<td>${escapeHtml(value)}${small}</td></tr>`;
+      }),
+      ...rows.map(([name, value]) => `<tr>${head(name)}<td>${escapeHtml(value)}</td></tr>`)
+    ];
     const heading = `${labels.run} ${place + 1}: <bdi>${escapeHtml(run.name)}</bdi>`;
     return `<section class="card"><h2>${heading}</h2><table>${lines.join('\n')}</table></section>`;
   });

@@ -47,6 +47,7 @@ export function bundleFiles(input: PackInput, texts: BundleTexts = englishTexts)
     ...stimuli.files
   };
   content['README.txt'] = texts.readMe({
+    kind: input.kind,
     title: input.document.brief.title,
     mark,
     files: texts.contents(Object.keys(stimuli.names).length > 0)

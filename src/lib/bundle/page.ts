@@ -40,6 +40,7 @@ export function bundlePage(
   const styles = [WAITING_STYLE, player.css.replace(/<\/(style)/gi, '<\\/$1')].filter(Boolean);
   const mark = texts.mark(payload.kind);
   const hasLargeStimuli = Object.values(payload.assets).some((asset) => 'script' in asset);
+  const data = jsonForHtml(payload);
   const title = [payload.document.brief.title, mark].filter(Boolean).join(' · ');
   return [
     '<!doctype html>',
@@ -59,7 +60,8 @@ export function bundlePage(
     `<p class="ebbline-waiting">${escapeHtml(texts.notStarted)}</p>`,
     `<noscript><p class="ebbline-waiting">${escapeHtml(texts.noScript)}</p></noscript>`,
     '</div>',
-    `<script type="application/json" id="payload">${jsonForHtml(payload)}</script>`,
+    // The policy names scripts only; the payload's own hash lets the player notice a copy that was damaged.
+    `<script type="application/json" id="payload" data-sha256="${sha256Hex(data)}">${data}</script>`,
     `<script>${script}</script>`,
     '</body>',
     '</html>',

@@ -20,7 +20,8 @@ tr{break-inside:avoid}
 .card{break-inside:avoid}
 .card th{width:17rem;font-weight:400}
 .card .main th,.card .main td{font-size:1.5rem;font-weight:700}
-td.box{width:3.2rem}
+thead th{overflow-wrap:normal}
+td small{font-weight:400;font-size:1rem;display:block}
 .warn{border-left:.4rem solid #9c3a12;padding-left:.7rem}
 ul{padding-left:1.2rem}
 @media print{body{padding:1.6cm 0 0;background:none;max-width:none}.mark{position:fixed;top:0;left:0;right:0;background:#fff}}

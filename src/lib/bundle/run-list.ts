@@ -33,7 +33,7 @@ export function runList(input: PackInput, texts: BundleTexts): string {
   const head = columns.map((name) => `<th scope="col">${escapeHtml(name)}</th>`).join('');
   const lines = (planned.length ? planned : blank).map((cells) => {
     const written = cells.map((text) => `<td dir="auto">${escapeHtml(text)}</td>`).join('');
-    return `<tr>${written}<td class="box"></td><td></td><td></td><td class="box">☐</td><td></td></tr>`;
+    return `<tr>${written}<td></td><td></td><td></td><td>☐</td><td></td></tr>`;
   });
   const table = `<table><thead><tr>${head}</tr></thead><tbody>\n${lines.join('\n')}\n</tbody></table>`;
   return paper(input, texts, texts.runList, `<p>${escapeHtml(texts.runListHelp)}</p>\n${table}`);

@@ -44,14 +44,15 @@ export interface BundleTexts {
     | 'remarks',
     string
   >;
-  volumesToType(facts: ScanFacts): string;
+  /** Beside the volumes to type; null without dummies. */
+  dummiesNote(facts: ScanFacts): string | null;
   silentDummies(count: number): string;
   otherTr(profileTr: number): string;
   runListHelp: string;
   cautions: string[];
   /** Path → what it is, for the read-me. */
   contents(hasStimuli: boolean): [path: string, what: string][];
-  readMe(facts: { title: string; mark: string | null; files: [string, string][] }): string;
+  readMe(facts: { kind: BundleKind; title: string; mark: string | null; files: [string, string][] }): string;
 }
 
 const plural = (count: number, one: string, many: string) => `${count} ${count === 1 ? one : many}`;
@@ -119,13 +120,13 @@ export const englishTexts: BundleTexts = {
     saved: 'Log saved',
     remarks: 'Remarks'
   },
-  volumesToType: ({ volumesToType, dummiesWithPulses }) =>
+  dummiesNote: ({ dummiesWithPulses }) =>
     dummiesWithPulses
-      ? `${volumesToType}, of which the first ${plural(dummiesWithPulses, 'is a dummy', 'are dummies')} with pulses`
-      : `${volumesToType}`,
+      ? `of which the first ${plural(dummiesWithPulses, 'is a dummy', 'are dummies')} with pulses`
+      : null,
   silentDummies: (count) => (count ? `${count}, added by the scanner before the first pulse` : 'none'),
   otherTr: (profileTr) =>
-    `The scanner profile's own TR is ${profileTr} s. The task was planned for the TR above: set that one, or do not run.`,
+    `The scanner profile's own TR is ${profileTr} s. The task was planned for the TR in the table: set that one, or do not run.`,
   runListHelp:
     'One line for each run. Enter the participant code, never a name. Tick "Log saved" only when the log and the event table are on the disk that goes back to the lab.',
   cautions: CAUTIONS,
@@ -138,7 +139,7 @@ export const englishTexts: BundleTexts = {
     ['methods.txt', 'a paragraph for the methods section'],
     ['MANIFEST.json, checksums.sha256', 'what was packed, with the SHA-256 of every file']
   ],
-  readMe: ({ title, mark, files }) =>
+  readMe: ({ kind, title, mark, files }) =>
     [
       mark,
       `${title}: a task to run at the scanner, packed by Ebbline`,
@@ -147,8 +148,15 @@ export const englishTexts: BundleTexts = {
       '1. Unpack the whole zip into a folder on the stimulus computer. Nothing is installed, no network is needed.',
       '2. Open index.html in a Chromium-based browser (for collection), full screen, at 100 % zoom, on the screen that the participant sees.',
       '3. Enter the participant code, the run and your operator code; let the self-check pass.',
-      '4. Type the numbers of console-card.html at the scanner console.',
-      '5. Arm the run, then start the scan. Pulses before arming are shown and not obeyed.',
+      ...(kind === 'PRACTICE'
+        ? [
+            '4. There is no scanner in a practice: the trigger key starts it.',
+            '5. Explain the task, then start.'
+          ]
+        : [
+            '4. Type the numbers of console-card.html at the scanner console.',
+            '5. Arm the run, then start the scan. Pulses before arming are shown and not obeyed.'
+          ]),
       '6. To end early hold Shift and End for one second; the run is kept as partial.',
       '7. At the end save the log and the event table, and take both back to the lab.',
       '',

@@ -37,7 +37,7 @@ describe.each(NAMES)('a task named %j', (name) => {
     expect(page.match(/<script/g)).toHaveLength(2);
     expect(page.match(/<\/script/g)).toHaveLength(2);
     expect(page).not.toContain('<img');
-    const json = /id="payload">(.*?)<\/script>/s.exec(page)![1]!;
+    const json = /id="payload" data-sha256="[0-9a-f]{64}">(.*?)<\/script>/s.exec(page)![1]!;
     const read = readPayload(JSON.parse(json));
     expect(read.ok && read.payload.document.brief.title).toBe(name);
     for (const path of ['console-card.html', 'run-list.html']) {

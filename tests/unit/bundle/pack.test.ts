@@ -12,7 +12,11 @@ const PLAYER = 'document.getElementById("root").textContent = "ready";';
 const sha = (bytes: Uint8Array | string) => createHash('sha256').update(bytes).digest('hex');
 const packed = async (input = sampleInput(PLAYER)) => unzip(await packBundle(input));
 const payloadIn = (page: string): unknown =>
-  JSON.parse(/<script type="application\/json" id="payload">(.*?)<\/script>/s.exec(page)![1]!);
+  JSON.parse(
+    /<script type="application\/json" id="payload" data-sha256="[0-9a-f]{64}">(.*?)<\/script>/s.exec(
+      page
+    )![1]!
+  );
 
 describe('packBundle', () => {
   it('holds the files that the operator and the analyst need', async () => {

@@ -51,7 +51,8 @@ describe('the papers', () => {
   it('tell on the console card what to type, for each run', () => {
     const card = consoleCard(input, englishTexts);
     const row = (name: string) => new RegExp(`>${name}</th><td>([^<]*)<`).exec(card)?.[1];
-    expect(row('Volumes to type')).toBe('302, of which the first 2 are dummies with pulses');
+    expect(row('Volumes to type')).toBe('302');
+    expect(card).toContain('<small>of which the first 2 are dummies with pulses</small>');
     expect(row('TR')).toBe('1.5 s');
     expect(row('Total \\(min:s\\)')).toBe('7:35');
     expect(row('Silent dummies')).toBe('1, added by the scanner before the first pulse');
@@ -67,7 +68,7 @@ describe('the papers', () => {
 
   it('carry every caution on the console card and in the read-me', () => {
     const card = consoleCard(input, englishTexts);
-    const readMe = englishTexts.readMe({ title: 'Chime', mark: null, files: [] });
+    const readMe = englishTexts.readMe({ kind: 'PROOF', title: 'Chime', mark: null, files: [] });
     for (const caution of CAUTIONS) {
       expect(card).toContain(caution.replaceAll("'", '&#39;'));
       expect(readMe).toContain(caution);
