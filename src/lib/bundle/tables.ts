@@ -12,7 +12,7 @@ export function plannedTables(input: PackInput, stimFiles: StimFiles): Record<st
   );
   const files: Record<string, string> = {};
   document.runs.forEach((run, place) => {
-    const stem = `task-${document.brief.label}_run-${String(place + 1).padStart(2, '0')}`;
+    const stem = `task-${document.brief.label}_run-${place + 1}`;
     files[`events/${stem}_events.tsv`] = eventsTsv(plannedEvents(document, run, stimFiles));
     files[`events/${stem}_events.json`] = sidecar;
     const taken = new Set<string>();

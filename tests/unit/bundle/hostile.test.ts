@@ -44,7 +44,7 @@ describe.each(NAMES)('a task named %j', (name) => {
       expect(textOf(files, path)).not.toMatch(/<script|<img/);
     }
 
-    const stem = 'events/task-chimelantern_run-01_events';
+    const stem = 'events/task-chimelantern_run-1_events';
     const tsv = textOf(files, `${stem}.tsv`);
     const sidecar = textOf(files, `${stem}.json`);
     expect(ownFindings({ stem, tsv, sidecar })).toEqual([]);

@@ -26,14 +26,14 @@ describe('packBundle', () => {
       'README.txt',
       'checksums.sha256',
       'console-card.html',
-      'events/conditions/task-chimelantern_run-01_follow-chime.tsv',
-      'events/conditions/task-chimelantern_run-01_follow-lantern.tsv',
-      'events/conditions/task-chimelantern_run-02_follow-chime.tsv',
-      'events/conditions/task-chimelantern_run-02_follow-lantern.tsv',
-      'events/task-chimelantern_run-01_events.json',
-      'events/task-chimelantern_run-01_events.tsv',
-      'events/task-chimelantern_run-02_events.json',
-      'events/task-chimelantern_run-02_events.tsv',
+      'events/conditions/task-chimelantern_run-1_follow-chime.tsv',
+      'events/conditions/task-chimelantern_run-1_follow-lantern.tsv',
+      'events/conditions/task-chimelantern_run-2_follow-chime.tsv',
+      'events/conditions/task-chimelantern_run-2_follow-lantern.tsv',
+      'events/task-chimelantern_run-1_events.json',
+      'events/task-chimelantern_run-1_events.tsv',
+      'events/task-chimelantern_run-2_events.json',
+      'events/task-chimelantern_run-2_events.tsv',
       'index.html',
       'methods.txt',
       'run-list.html',
@@ -64,11 +64,11 @@ describe('packBundle', () => {
 
   it('writes planned tables that pass our own checks and name the stimulus file', async () => {
     const files = await packed();
-    const stem = 'events/task-chimelantern_run-01_events';
+    const stem = 'events/task-chimelantern_run-1_events';
     const tsv = textOf(files, `${stem}.tsv`);
     expect(ownFindings({ stem, tsv, sidecar: textOf(files, `${stem}.json`) })).toEqual([]);
     expect(tsv.split('\n')[4]).toMatch(/^7\.000\t0\.500\tfollow-lantern\tn\/a\tharbour\.png\tharbour\t4\t/);
-    expect(textOf(files, 'events/conditions/task-chimelantern_run-01_follow-chime.tsv')).toBe(
+    expect(textOf(files, 'events/conditions/task-chimelantern_run-1_follow-chime.tsv')).toBe(
       'onset\tduration\tamplitude\n1.000\t0.500\t1\n5.000\t0.250\t1\n9.000\t0.500\t1\n'
     );
   });
