@@ -93,6 +93,7 @@ export function gammaDensity(shape: number, scale: number): GammaDensity {
   const isWhole = Number.isInteger(shape) && shape <= WHOLE_LIMIT;
   const logNormaliser = isWhole ? 0 : logGamma(shape);
   const normaliser = isWhole ? 1 / (scale * wholeGamma(shape)) : 1 / scale;
+  const lower = lowerTail(shape);
 
   function density(t: number): number {
     if (t < 0) return 0;
@@ -110,7 +111,7 @@ export function gammaDensity(shape: number, scale: number): GammaDensity {
     return x === 0 ? 0 : density(t) * ((shape - 1) / t - 1 / scale);
   }
   function cumulative(t: number): number {
-    return t <= 0 ? 0 : t === Infinity ? 1 : regularisedGamma(shape, t / scale);
+    return t <= 0 ? 0 : t === Infinity ? 1 : lower(t / scale);
   }
   return { shape, scale, density, slope, cumulative };
 }
@@ -123,17 +124,27 @@ export function gammaDensity(shape: number, scale: number): GammaDensity {
  * @example regularisedGamma(1, 2) // 1 − e⁻²
  */
 export function regularisedGamma(a: number, x: number): number {
-  if (!(x > 0)) return 0;
-  const isWhole = Number.isInteger(a) && a <= WHOLE_LIMIT;
-  if (x < a + 1) return leading(a, x, isWhole) * lowerSeries(a, x);
-  if (isWhole) return 1 - exp(-x) * partialExponential(a, x);
-  return 1 - leading(a, x, false) * a * upperFraction(a, x);
+  return lowerTail(a)(x);
 }
 
-/** x^a e^(−x) / Γ(a+1). */
-function leading(a: number, x: number, isWhole: boolean): number {
-  if (isWhole) return (wholePower(x, a) * exp(-x)) / wholeGamma(a + 1);
-  return exp(a * log(x) - x - logGamma(a + 1));
+/** x ↦ P(a, x) with what depends on a alone worked out once: a drag asks for thousands of values of two shapes. */
+function lowerTail(a: number): (x: number) => number {
+  if (Number.isInteger(a) && a <= WHOLE_LIMIT) {
+    const factorial = wholeGamma(a + 1);
+    return (x) => {
+      if (!(x > 0)) return 0;
+      if (x < a + 1) return ((wholePower(x, a) * exp(-x)) / factorial) * lowerSeries(a, x);
+      return 1 - exp(-x) * partialExponential(a, x);
+    };
+  }
+  const logFactorial = logGamma(a + 1);
+  // x^a e^(−x) / Γ(a+1)
+  const leading = (x: number) => exp(a * log(x) - x - logFactorial);
+  return (x) => {
+    if (!(x > 0)) return 0;
+    if (x < a + 1) return leading(x) * lowerSeries(a, x);
+    return 1 - leading(x) * a * upperFraction(a, x);
+  };
 }
 
 /** Σ xⁿ / ((a+1)…(a+n)), until a term no longer changes the sum. */
