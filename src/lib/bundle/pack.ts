@@ -4,6 +4,7 @@
  */
 import JSZip from 'jszip';
 import { PAYLOAD_FORMAT, readPayload, type PlayerPayload } from '$lib/player/payload';
+import { PLAYER_CSS } from '$lib/player/render/style';
 import { sha256Hex } from '$lib/task/canonical';
 import { methodsText } from '$lib/task/methods';
 import { consoleCard } from './console-card';
@@ -35,7 +36,7 @@ export function bundleFiles(input: PackInput, texts: BundleTexts = englishTexts)
     );
   const stimuli = packStimuli(input.document, input.assets);
   const payload = makePayload(input, stimuli);
-  const player = { script: input.playerScript, css: input.playerCss ?? '' };
+  const player = { script: input.playerScript, css: input.playerCss ?? PLAYER_CSS };
   const mark = texts.mark(input.kind);
   const methods = methodsText(input.document, input.profile, input.revision, softwareVersion(input));
   const content: Record<string, Uint8Array | string> = {

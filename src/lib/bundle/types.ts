@@ -25,8 +25,9 @@ export interface PackInput {
   study: { label: string; name: string };
   plan?: PlanRow[];
   assets: PackAsset[];
-  /** The player as one classic script, and a style sheet if it needs one. */
+  /** The player as one classic script. */
   playerScript: string;
+  /** Instead of the player's own style sheet. */
   playerCss?: string;
   /** SHA-256 of `playerScript`. */
   playerBuild: string;
