@@ -59,7 +59,8 @@ export function parseConfig(env: Record<string, string | undefined>) {
     origin: e.ORIGIN ?? null,
     secureCookie: e.ORIGIN?.startsWith('https:') ?? false,
     loopback: isLoopback(e.HOST) && (!e.ORIGIN || isLoopback(new URL(e.ORIGIN).hostname)),
-    dataDir: resolve(e.EBBLINE_DATA),
+    /** Uploads in progress; beside the stored files, so that finishing one is a rename. */
+    uploadFolder: resolve(e.EBBLINE_DATA, 'uploads'),
     storage:
       e.STORAGE === 's3'
         ? {

@@ -27,8 +27,8 @@ export async function recentSaves(db: Knex, labId: string, limit: number): Promi
     );
 }
 
-/** Save number of the newest sealed revision of each task that has one. */
-export async function sealedAt(db: Knex, labId: string): Promise<Map<string, number>> {
+/** Save number of the newest snapshot kept by Pack, for each task that has one. */
+export async function packedAt(db: Knex, labId: string): Promise<Map<string, number>> {
   const rows: { task_id: string; number: number }[] = await db('revisions')
     .where({ lab_id: labId })
     .groupBy('task_id')
