@@ -69,6 +69,8 @@ export function reportContrast(
   const confounded = [...involved, ...nuisance];
   if (involved.length === 1 && nuisance.length > 0)
     return refused(confounded, `${listed(involved)} cannot be told from ${listed(nuisance)}.`);
+  if (confounded.length === 1)
+    return refused(confounded, `Nothing of ${listed(confounded)} is left beside drift and noise.`);
   return refused(confounded, `${listed(confounded)} cannot be told apart.`);
 }
 

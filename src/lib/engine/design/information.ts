@@ -1,6 +1,6 @@
 import { projectOut } from '../linalg/basis';
 import { dot, gram, norm } from '../linalg/vector';
-import { requireColumn, type Column, type Setting } from './setting';
+import { requireColumn, whiten, type Column, type Setting } from './setting';
 
 /** What one run says about its columns. */
 export interface RunInformation {
@@ -24,7 +24,7 @@ export const INSIDE_NUISANCE = 1e-8;
  */
 export function runInformation(columns: readonly Column[], setting: Setting): RunInformation {
   const whitened = columns.map((column) =>
-    setting.whitener.apply(requireColumn(column, setting.base.volumes).values)
+    whiten(setting.whitener, requireColumn(column, setting.base.volumes).values)
   );
   const lengths = whitened.map(norm);
   const rest = whitened.map((column, j) => {

@@ -70,7 +70,9 @@ export function designReportOf(runs: readonly RunDesign[], contrasts: readonly C
   const parts = runs.map((run, r) => runInformation(run.columns, settings[r]!));
   const information = addInformation(parts.map((part) => part.matrix));
   const space = rowSpaceOf(information);
-  const isEmpty = names.map((_, j) => parts.every((part) => part.lengths[j] === 0));
+  const isEmpty = names.map((_, j) =>
+    runs.every((run) => run.columns[j]!.values.every((value) => value === 0))
+  );
   const nuisanceOf = (direction: readonly number[]) => nuisanceIn(direction, parts, settings);
 
   const middle = cross(runs.map((run) => run.columns.map((column) => centred(column.values))));

@@ -1,5 +1,6 @@
 import { EngineError, requirePositive, requireWhole } from '../errors';
 import { orthonormalBasis, type Basis } from '../linalg/basis';
+import { norm } from '../linalg/vector';
 import { constant, dctDrift, dctDriftAt } from '../noise/drift';
 import type { NoiseModel } from '../noise/model';
 import { whitenerOf, type TimeBase, type Whitener } from '../noise/whitener';
@@ -59,8 +60,17 @@ export function prepareSetting(input: SettingInput): Setting {
   const values = nuisance.map((column) => column.values);
   const plain = orthonormalBasis(values);
   const isWhite = input.noise.kind === 'white';
-  const whitened = isWhite ? plain : orthonormalBasis(values.map((column) => whitener.apply(column)));
+  const whitened = isWhite ? plain : orthonormalBasis(values.map((column) => whiten(whitener, column)));
   return { base, whitener, nuisance, whitened, plain };
+}
+
+/**
+ * W·column, with exact zeros where the whitening leaves nothing but rounding (a constant under noise whose mean is
+ * unknown): no serial correlation in use shrinks a column to a billionth.
+ */
+export function whiten(whitener: Whitener, column: Float64Array): Float64Array {
+  const out = whitener.apply(column);
+  return norm(out) <= 1e-9 * norm(column) ? out.fill(0) : out;
 }
 
 /** Throws unless the column has one finite number per volume; returns it. */

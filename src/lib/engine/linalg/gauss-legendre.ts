@@ -17,15 +17,12 @@ export function gaussLegendre(order: number): Quadrature {
   const weights: number[] = [];
   for (let k = order; k >= 1; k -= 1) {
     let x = cos((Math.PI * (k - 0.25)) / (order + 0.5));
-    let derivative = 1;
     for (let step = 0; step < 20; step += 1) {
-      const legendre = legendreAt(order, x);
-      derivative = legendre.derivative;
-      const change = legendre.value / derivative;
-      x -= change;
-      if (Math.abs(change) < 1e-16) break;
+      const { value, derivative } = legendreAt(order, x);
+      x -= value / derivative;
+      if (Math.abs(value / derivative) < 1e-16) break;
     }
-    derivative = legendreAt(order, x).derivative;
+    const { derivative } = legendreAt(order, x);
     nodes.push(x);
     weights.push(2 / ((1 - x * x) * derivative * derivative));
   }

@@ -55,3 +55,25 @@ export function dctDriftAt(times: ArrayLike<Seconds>, cutoff: Seconds): Float64A
     )
   );
 }
+
+/**
+ * Polynomial drift of orders 1…`order` (the constant is a column of its own): Legendre polynomials at the volumes,
+ * u = (2i + 1 − N)/N, by the three-term recurrence, scaled to length 1.
+ *
+ * @returns `order` columns of length N; orders above N − 1 are left out, they would add nothing
+ * Source: Legendre polynomials, textbook.
+ */
+export function polynomialDrift(volumes: number, order: number): Float64Array[] {
+  requireWhole('number of volumes', volumes, 1, 'Give the run at least one volume.');
+  requireWhole('order of the polynomial drift', order, 0, 'Use 0 for none, 3 for slow bends.');
+  const u = Float64Array.from({ length: volumes }, (_, i) => (2 * i + 1 - volumes) / volumes);
+  const columns: Float64Array[] = [constant(volumes), u];
+  for (let n = 2; n <= order; n += 1)
+    columns.push(
+      u.map((x, i) => ((2 * n - 1) * x * columns[n - 1]![i]! - (n - 1) * columns[n - 2]![i]!) / n)
+    );
+  return columns.slice(1, Math.min(order, volumes - 1) + 1).map((column) => {
+    const length = Math.sqrt(column.reduce((sum, value) => sum + value * value, 0));
+    return column.map((value) => value / length);
+  });
+}

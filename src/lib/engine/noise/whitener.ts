@@ -1,7 +1,9 @@
-import { EngineError } from '../errors';
 import type { Seconds } from '../units';
 import { ar1Whitener } from './ar1';
+import { ar1WhiteWhitener } from './ar1-white';
+import { givenWhitener } from './given';
 import { requireNoise, type NoiseModel } from './model';
+import { oneOverFWhitener } from './one-over-f';
 
 /**
  * W with W V Wᵀ = I (or = the projection that removes the mean, for noise without one), as an action on a column:
@@ -32,7 +34,11 @@ export function whitenerOf(noise: NoiseModel, base: TimeBase): Whitener {
       return { apply: (column) => column.slice(), logDeterminant: 0 };
     case 'ar1':
       return ar1Whitener(noise.rho, noise.rhoTr, base);
-    default:
-      throw new EngineError('noise model', noise.kind, 'white or ar1', 'Choose one of them.');
+    case 'ar1-white':
+      return ar1WhiteWhitener(noise.rho, noise.rhoTr, noise.share, base);
+    case 'one-over-f':
+      return oneOverFWhitener(noise.exponent, base);
+    case 'given':
+      return givenWhitener(noise.correlations, base);
   }
 }
