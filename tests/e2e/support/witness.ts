@@ -67,8 +67,9 @@ function observe(): void {
   (window as unknown as { ebblineWitness: Testimony }).ebblineWitness = { frames, keys };
 }
 
-/** Before the page is opened. */
-export const callWitness = (page: Page): Promise<unknown> => page.addInitScript(observe);
+/** To be called before the page is opened. (`__name` is what tsx wraps functions with.) */
+export const callWitness = (page: Page): Promise<unknown> =>
+  page.addInitScript({ content: `{const __name=(f)=>f;(${observe.toString()})();}` });
 
 export const hearWitness = (page: Page): Promise<Testimony> =>
   page.evaluate(() => (window as unknown as { ebblineWitness: Testimony }).ebblineWitness);
