@@ -1,0 +1,40 @@
+/** Text files out of the page: into a folder the operator chooses where the browser can, else as downloads. */
+export interface OutFile {
+  name: string;
+  text: string;
+  mime: string;
+}
+
+export function download({ name, text, mime }: OutFile): void {
+  const url = URL.createObjectURL(new Blob([text], { type: mime }));
+  const link = document.createElement('a');
+  link.href = url;
+  link.download = name;
+  document.body.append(link);
+  link.click();
+  link.remove();
+  setTimeout(() => URL.revokeObjectURL(url), 60_000);
+}
+
+type PickFolder = (options: { mode: 'readwrite' }) => Promise<FileSystemDirectoryHandle>;
+const picker = (): PickFolder | undefined =>
+  (window as { showDirectoryPicker?: PickFolder }).showDirectoryPicker?.bind(window);
+
+export const canSaveToFolder = (): boolean => picker() !== undefined;
+
+/** Writes the files into a folder; false when the operator chose none. Rejects when the folder refuses them. */
+export async function saveToFolder(files: readonly OutFile[]): Promise<boolean> {
+  let folder: FileSystemDirectoryHandle;
+  try {
+    folder = await picker()!({ mode: 'readwrite' });
+  } catch {
+    return false;
+  }
+  for (const file of files) {
+    const handle = await folder.getFileHandle(file.name, { create: true });
+    const stream = await handle.createWritable();
+    await stream.write(file.text);
+    await stream.close();
+  }
+  return true;
+}
