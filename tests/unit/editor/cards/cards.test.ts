@@ -1,7 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { itemExtent, outsideScreen, screenDegrees } from '../../../../src/lib/editor/cards/screen';
-import { alongStrip, stagesOf, visibleAt, type SoundItem } from '../../../../src/lib/editor/cards/stages';
-import { amplitude, envelope } from '../../../../src/lib/editor/cards/tone';
+import { alongStrip, stagesOf, visibleAt } from '../../../../src/lib/editor/cards/stages';
 import { newCard, newItem, newWindow } from '../../../../src/lib/task/create';
 import { defaultProfile } from '../../../../src/lib/task/profile';
 import type { Card, Item, ItemKind } from '../../../../src/lib/task/schema';
@@ -101,28 +100,5 @@ describe('the screen in degrees', () => {
     expect(itemExtent(inside)).toEqual({ width: 3, height: 3 });
     expect(outsideScreen({ ...inside, x: 13 }, screen)).toContain('Reaches 14.5° sideways');
     expect(outsideScreen({ ...inside, y: -8 }, screen)).toContain('up or down');
-  });
-});
-
-describe('a tone heard in the editor', () => {
-  it('keeps level and ramps', () => {
-    expect(amplitude(0)).toBe(1);
-    expect(amplitude(-20)).toBeCloseTo(0.1, 12);
-    expect(envelope(0.2, 0.01, 0.1)).toEqual([
-      [0, 0],
-      [0.01, 0.1],
-      [0.19, 0.1],
-      [0.2, 0]
-    ]);
-  });
-
-  it('shortens ramps that do not fit', () => {
-    const tone = newItem('sound', 10_000) as SoundItem;
-    expect(envelope(tone.duration / 1e6, 0.5, 1)).toEqual([
-      [0, 0],
-      [0.005, 1],
-      [0.005, 1],
-      [0.01, 0]
-    ]);
   });
 });
