@@ -26,7 +26,7 @@ export function scannerClock(
   for (const e of standing(entries))
     if (e.type === 'pulse' && e.state === 'counted' && e.volume !== null)
       line.add(e.volume + (e.part ?? 0) * part, e.page);
-  const agrees = Math.abs(line.slope / header.tr - 1) <= 0.01;
+  const agrees = Math.abs(line.measured / header.tr - 1) <= 0.01;
   if (mode === 'once' || line.count < 4 || !agrees) return (page) => page - zero;
   return (page) => line.positionAt(page) * header.tr;
 }

@@ -182,7 +182,7 @@ export class PulseReader {
       else if (position > 0) news.push(this.#fix(this.line.timeAt(0), true));
     }
     if (this.agrees === null && mode !== 'once' && position + before >= 3 && this.line.count >= 4) {
-      const measured = this.line.slope;
+      const measured = this.line.measured;
       this.agrees = Math.abs(measured - tr) <= Math.max(0.01 * tr, 0.01);
       news.push({ kind: 'interval', time, measured, planned: tr, agrees: this.agrees });
     }

@@ -6,6 +6,7 @@
  * bundle's canvas, in the rehearsal and, on a virtual clock, in tests.
  */
 import type { Profile } from '../task/profile';
+import { roundMicro } from './clock';
 import { FrameMeter, isDue } from './frames';
 import type { RunLog } from './log';
 import type { FocusLine, ItemLine, PulseLine as PulseEntry, Timing } from './log-lines';
@@ -140,7 +141,7 @@ export class Runtime {
       windowId: press.window?.window.id ?? null,
       responses: [response.id],
       names: [response.name],
-      presses: [pressed]
+      presses: [roundMicro(pressed)]
     });
   }
   keyUp(code: string, page: number): void {
@@ -212,7 +213,7 @@ export class Runtime {
   }
   #drop(frames: number, page: number): void {
     const passed = page - this.#lastFrame;
-    this.#o.log.add({ type: 'drop', page, frames, interval: passed });
+    this.#o.log.add({ type: 'drop', page, frames, interval: roundMicro(passed) });
     if (passed > CLOCK_JUMP)
       this.#note(
         page,
@@ -401,8 +402,8 @@ export class Runtime {
       item: s.item.name,
       kind: s.item.kind,
       planned: state === 'off' ? s.end : s.onset,
-      frame: frame === null ? null : frame - this.#zero,
-      shown,
+      frame: frame === null ? null : roundMicro(frame - this.#zero),
+      shown: shown === null ? null : roundMicro(shown),
       ...(reason === undefined ? {} : { reason })
     });
   }
@@ -422,7 +423,7 @@ export class Runtime {
         windowId: window.window.id,
         responses: taken.map((p) => p.response.id),
         names: taken.map((p) => p.response.name),
-        presses: taken.map((p) => p.time + this.#zero + this.#shift)
+        presses: taken.map((p) => roundMicro(p.time + this.#zero + this.#shift))
       });
       this.#o.onAnswer?.(answer);
     }

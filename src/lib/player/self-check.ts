@@ -87,7 +87,7 @@ export function checkKeys(
     return {
       id: 'keys',
       level: 'green',
-      text: `${wanted.length === 1 ? 'The response key' : `All ${wanted.length} response keys`} seen`,
+      text: `${wanted.length === 1 ? 'The response key' : `${wanted.length} response keys`} seen`,
       detail: wanted.join(', ')
     };
   if (skipped === null)

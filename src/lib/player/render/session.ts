@@ -62,7 +62,7 @@ export class Sitting {
     this.#view = view;
     if (!view) return;
     this.root.append(view);
-    view.querySelector<HTMLElement>('[autofocus]')?.focus();
+    view.querySelector<HTMLElement>('[data-focus]')?.focus();
   }
 }
 

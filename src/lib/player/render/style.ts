@@ -4,6 +4,7 @@
  */
 export const PLAYER_CSS = `
 *{box-sizing:border-box}
+html{color-scheme:dark}
 html,body{height:100%}
 body{margin:0;background:#0c1214;color:#dfe7e4;font:20px/1.45 "Atkinson Hyperlegible",system-ui,sans-serif;font-variant-numeric:tabular-nums}
 #root,.player{height:100%}

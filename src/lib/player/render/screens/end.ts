@@ -49,7 +49,7 @@ export function showEnd(
       if (what !== 'sidecar') note(what);
     };
     const first = button('Save log', save('log'), true);
-    first.setAttribute('autofocus', '');
+    first.setAttribute('data-focus', '');
     const toFolder = async () => {
       if (!(await saveToFolder([files.log, files.events, files.sidecar]))) return;
       note('log');

@@ -85,7 +85,7 @@ function makeFields(payload: PlayerPayload, suggest: Entry | null): Fields {
   const box = (checked: boolean) => h('input', { type: 'checkbox', checked });
   return {
     participant: text(suggest?.participant ?? (known.length === 1 ? known[0]! : ''), {
-      autofocus: true,
+      'data-focus': true,
       list: known.length ? 'known' : null
     }),
     session: text(suggest?.session ?? ''),

@@ -45,7 +45,7 @@ export function frame({ payload, entry, main, single = false, foot = [] }: Frame
       h(
         'span',
         { class: 'kind' },
-        `${markWords(payload.kind)} · revision ${payload.revision.slice(0, 8)} · profile ${payload.profile.name} ${payload.profileHash.slice(0, 4)}`
+        `${markWords(payload.kind)} · revision ${payload.revision.slice(0, 4)} · profile ${payload.profile.name} ${payload.profileHash.slice(0, 4)}`
       )
     ),
     h('main', { class: single ? 'one' : null }, ...main),

@@ -41,7 +41,7 @@ export function askReady(sitting: Sitting, entry: Entry, items: readonly CheckIt
   const isPractice = payload.kind === 'PRACTICE';
   return new Promise((done) => {
     const arm = button(isPractice ? 'Start practice' : 'Arm the run', () => done('arm'), true);
-    arm.setAttribute('autofocus', '');
+    arm.setAttribute('data-focus', '');
     const left = h(
       'div',
       {},
