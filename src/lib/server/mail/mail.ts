@@ -13,8 +13,10 @@ export interface Mail {
   text: string;
 }
 
-export async function sendMail(mail: Mail): Promise<boolean> {
-  const { url, from, folder } = config().mail;
+export async function sendMail(
+  mail: Mail,
+  { url, from, folder }: { url: string | null; from: string; folder: string } = config().mail
+): Promise<boolean> {
   try {
     if (url) {
       const transport = nodemailer.createTransport(url);

@@ -1,0 +1,22 @@
+/** Where stimulus files lie: a folder, or a bucket that speaks S3. Keys are `lab/sha256`, written once. */
+import { config } from '../config';
+import { folderStorage } from './folder';
+
+export interface Storage {
+  /** Take over a finished file; the same key may come again with the same bytes. */
+  put(key: string, path: string, size: number, mime: string): Promise<void>;
+  /** The bytes, or null when there is no such file. */
+  get(key: string): Promise<Uint8Array | null>;
+}
+
+let current: Promise<Storage> | null = null;
+export const storage = (): Promise<Storage> => (current ??= openStorage());
+
+async function openStorage(): Promise<Storage> {
+  const chosen = config().storage;
+  if (chosen.kind === 'folder') return folderStorage(chosen.folder);
+  // Its library is large; only who uses it loads it.
+  return (await import('./s3')).s3Storage(chosen);
+}
+
+export const assetKey = (labId: string, sha256: string) => `${labId}/${sha256}`;
