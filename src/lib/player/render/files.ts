@@ -35,7 +35,8 @@ export function attemptFiles(
   const stem = fileStem(header);
   // BIDS knows no attempts: the first bears the plain name, later ones are told apart until one is chosen.
   const table = header.attempt > 1 ? stem : stem.replace(/_attempt-\d+$/, '');
-  const rows = run ? rowsOf(doc, run, header, entries) : [];
+  const stimFiles = Object.fromEntries(Object.entries(payload.assets).map(([sha, a]) => [sha, a.file]));
+  const rows = run ? rowsOf(doc, run, header, entries, stimFiles) : [];
   const sidecar = eventsSidecar(doc, {
     profile: payload.profile,
     revision: header.revision,
