@@ -8,9 +8,12 @@ import type { TaskDocument } from '$lib/task/schema';
 import type { DocumentClient } from './document-client';
 import type { KeptStore } from './kept-edits';
 
+/** The newer save that lies between, as far as is known of it. */
 export interface Theirs {
   saveNumber: number;
   document: TaskDocument;
+  author: string | null;
+  savedAt: string | null;
 }
 
 export type SaveState =
@@ -37,7 +40,8 @@ export interface AutosaveOptions {
 
 const RETRIES = [1000, 2000, 4000, 8000, 15_000];
 /** The server takes so many words of a save; of a longer list the newest are told. */
-const MOST_WORDS = 100;
+const MOST_WORDS = 400;
+const LONGEST_WORDS = 500;
 const same = (a: TaskDocument, b: TaskDocument): boolean => a === b || canonicalJson(a) === canonicalJson(b);
 
 export class Autosave {
@@ -68,7 +72,7 @@ export class Autosave {
   /** Called after every edit, undo and redo. */
   edited(document: TaskDocument, words: string): void {
     const before = this.#pending?.words ?? [];
-    this.#pending = { document, words: [...before, words].slice(-MOST_WORDS) };
+    this.#pending = { document, words: [...before, words.slice(0, LONGEST_WORDS)].slice(-MOST_WORDS) };
     void this.#keep();
     if (this.state.kind === 'stale' || this.state.kind === 'signed-out') return;
     if (this.state.kind !== 'waiting') this.state = { kind: 'saving' };
@@ -106,7 +110,11 @@ export class Autosave {
       if (kept.base === this.saveNumber) {
         this.state = { kind: 'saving' };
         this.#later(0);
-      } else this.state = { kind: 'stale', theirs: { saveNumber: this.saveNumber, document: current } };
+      } else
+        this.state = {
+          kind: 'stale',
+          theirs: { saveNumber: this.saveNumber, document: current, author: null, savedAt: null }
+        };
       return kept.document;
     }
     return null;
@@ -173,20 +181,20 @@ export class Autosave {
     this.#isSending = true;
     const { document, words } = pending;
     if (this.state.kind !== 'waiting') this.state = { kind: 'saving' };
-    let answer = await this.#options.client.save(document, words, this.saveNumber);
-    if (answer.kind === 'stale') answer = await this.#meetStale(document);
+    const answer = await this.#options.client.save(document, words, this.saveNumber);
+    const met = answer.kind === 'stale' ? await this.#meetStale(document, answer) : answer;
     this.#isSending = false;
 
-    switch (answer.kind) {
+    switch (met.kind) {
       case 'saved':
-        return this.#saved(answer.saveNumber, document, words.length);
+        return this.#saved(met.saveNumber, document, words.length);
       case 'again':
-        this.saveNumber = answer.saveNumber;
+        this.saveNumber = met.saveNumber;
         this.#uncertain = null;
         return this.#send();
       case 'away': {
         this.#uncertain = document;
-        this.state = { kind: 'waiting', reason: answer.reason };
+        this.state = { kind: 'waiting', reason: met.reason };
         const wait = RETRIES[Math.min(this.#attempt++, RETRIES.length - 1)] ?? 15_000;
         return this.#later(wait);
       }
@@ -194,10 +202,10 @@ export class Autosave {
         this.state = { kind: 'signed-out' };
         return;
       case 'refused':
-        this.state = { kind: 'refused', message: answer.message };
+        this.state = { kind: 'refused', message: met.message };
         return;
       case 'chosen':
-        this.state = { kind: 'stale', theirs: answer.theirs };
+        this.state = { kind: 'stale', theirs: met.theirs };
     }
   }
 
@@ -222,7 +230,8 @@ export class Autosave {
    * A newer save lies on the server. It may be ours, where an answer was lost on the way: then it is no clash.
    */
   async #meetStale(
-    document: TaskDocument
+    document: TaskDocument,
+    { author, savedAt }: Pick<Theirs, 'author' | 'savedAt'>
   ): Promise<
     | { kind: 'saved' | 'again'; saveNumber: number }
     | { kind: 'chosen'; theirs: Theirs }
@@ -235,7 +244,7 @@ export class Autosave {
       if (same(theirs.document, document)) return { kind: 'saved', saveNumber: theirs.saveNumber };
       if (this.#uncertain && same(theirs.document, this.#uncertain))
         return { kind: 'again', saveNumber: theirs.saveNumber };
-      return { kind: 'chosen', theirs };
+      return { kind: 'chosen', theirs: { ...theirs, author, savedAt } };
     } catch (error) {
       return {
         kind: 'away',

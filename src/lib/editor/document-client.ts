@@ -3,7 +3,8 @@ import type { TaskDocument } from '$lib/task/schema';
 
 export type SaveAnswer =
   | { kind: 'saved'; saveNumber: number }
-  | { kind: 'stale'; saveNumber: number | null }
+  /** Somebody saved in between; who and when, where the server says it. */
+  | { kind: 'stale'; author: string | null; savedAt: string | null }
   | { kind: 'away'; reason: string }
   | { kind: 'signed-out' }
   | { kind: 'refused'; message: string };
@@ -16,10 +17,9 @@ export interface DocumentClient {
 
 interface ErrorBody {
   error?: {
-    code?: string;
     message?: string;
-    saveNumber?: number;
     details?: { path?: string; message?: string }[];
+    current?: { author?: string | null; savedAt?: string };
   };
 }
 
@@ -72,11 +72,10 @@ export function httpClient(task: string, request: typeof fetch = (...a) => fetch
           ? { kind: 'away', reason: 'the answer was not complete' }
           : { kind: 'saved', saveNumber };
       }
-      if (status === 412)
-        return {
-          kind: 'stale',
-          saveNumber: numberIn((answer as ErrorBody | null)?.error) ?? numberIn(answer) ?? tagNumber(response)
-        };
+      if (status === 412) {
+        const current = (answer as ErrorBody | null)?.error?.current;
+        return { kind: 'stale', author: current?.author ?? null, savedAt: current?.savedAt ?? null };
+      }
       if (status === 401) return { kind: 'signed-out' };
       if (status >= 500 || status === 429 || status === 408)
         return { kind: 'away', reason: `the server answered with status ${status}` };

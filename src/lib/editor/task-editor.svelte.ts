@@ -15,6 +15,7 @@ import { httpClient, type DocumentClient } from './document-client';
 import { browserStore, type KeptStore } from './kept-edits';
 import { DesignView } from './page/design-view.svelte';
 import type { GestureHost } from './page/gesture';
+import { idSet } from './plain';
 import { tabId, tabIsOpen } from './tab-id';
 import { ViewMemory } from './view-memory.svelte';
 
@@ -46,7 +47,7 @@ export class TaskEditor implements GestureHost {
   #runId = $state<string>('');
 
   /** Ids of the selected trials of the run. */
-  selection = $state.raw<ReadonlySet<string>>(new Set());
+  selection = $state.raw(idSet());
   /** A refused edit in one sentence, until the next edit or its dismissal. */
   problem = $state<string | null>(null);
   /** Spoken by the live region. */
@@ -166,11 +167,11 @@ export class TaskEditor implements GestureHost {
   chooseRun(runId: string): void {
     this.#preview = null;
     this.#runId = runId;
-    this.selection = new Set();
+    this.selection = idSet();
   }
 
   select(ids: Iterable<string>): void {
-    this.selection = new Set(ids);
+    this.selection = idSet(ids);
   }
 
   announce(text: string): void {
@@ -206,9 +207,9 @@ export class TaskEditor implements GestureHost {
   /** Trials that are gone are no longer selected; a run that is gone is no longer chosen. */
   #prune(): void {
     if (!this.document.runs.some((r) => r.id === this.#runId)) this.#runId = this.document.runs[0]?.id ?? '';
-    const alive = new Set(this.#runIn(this.document).trials.map((t) => t.id));
+    const alive = idSet(this.#runIn(this.document).trials.map((t) => t.id));
     if ([...this.selection].some((id) => !alive.has(id)))
-      this.selection = new Set([...this.selection].filter((id) => alive.has(id)));
+      this.selection = idSet([...this.selection].filter((id) => alive.has(id)));
   }
 }
 

@@ -21,7 +21,7 @@ class PretendServer implements DocumentClient {
     if (this.mood === 'away') return { kind: 'away', reason: 'no answer from the server' };
     if (this.mood === 'signed-out') return { kind: 'signed-out' };
     if (this.mood === 'refusing') return { kind: 'refused', message: 'The label is not allowed.' };
-    if (on !== this.number) return { kind: 'stale', saveNumber: this.number };
+    if (on !== this.number) return { kind: 'stale', author: 'B', savedAt: null };
     this.saves.push({ document: structuredClone(document), words });
     if (this.mood === 'lost-answer') return { kind: 'away', reason: 'no answer from the server' };
     return { kind: 'saved', saveNumber: this.number };

@@ -1,0 +1,13 @@
+/** Figures as the panels write them: enough digits to see a change, never more than are meant. */
+
+/** Three significant digits; 0 for what cannot be estimated. */
+export function efficiencyText(value: number): string {
+  if (value === 0) return '0';
+  if (!Number.isFinite(value)) return '∞';
+  if (value >= 1000) return Math.round(value).toLocaleString('en');
+  return value.toPrecision(3).replace(/e-0*(\d+)$/, ' · 10⁻$1');
+}
+
+/** Two decimals; ∞ where a column is the sum of others. */
+export const inflationText = (value: number): string =>
+  !Number.isFinite(value) ? '∞' : value >= 1000 ? '> 1,000' : value.toFixed(2);
