@@ -1,6 +1,7 @@
 import { EngineError } from '../errors';
 import { coefficientsOn } from '../linalg/basis';
 import { addScaled, centred, dot, norm } from '../linalg/vector';
+import { aliasesOf, type Alias } from './aliases';
 import { correlationsFrom, inflationFrom } from './collinearity';
 import { reportContrast, type Contrast, type ContrastReport } from './contrast';
 import {
@@ -33,6 +34,8 @@ export interface DesignReport {
   contrasts: ContrastReport[];
   /** Number of columns the design can tell apart. */
   rank: number;
+  /** The columns it cannot: one short list per missing rank, with the weights of their invisible combination. */
+  aliases: Alias[];
   /** 1/(1 − R²) of each column on all others and the nuisance; Infinity where it is their sum. Warning above 5. */
   vif: NamedValue[];
   /** The same on the other conditions and the constant only. */
@@ -83,6 +86,7 @@ export function designReportOf(runs: readonly RunDesign[], contrasts: readonly C
     information,
     contrasts: contrasts.map((contrast) => reportContrast(contrast, space, names, isEmpty, nuisanceOf)),
     rank: space.rank,
+    aliases: aliasesOf(space, names),
     vif: named(inflationFrom(plainCross(runs, settings), totals, squares)),
     vifConditions: named(inflationFrom(middle, totals, squares)),
     correlations: correlationsFrom(middle, squares),

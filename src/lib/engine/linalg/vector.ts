@@ -5,9 +5,14 @@ export function dot(a: Float64Array, b: Float64Array): number {
   return sum;
 }
 
-/** Euclidean length. */
+/** Euclidean length, also of vectors whose squares would underflow or overflow. */
 export function norm(a: Float64Array): number {
-  return Math.sqrt(dot(a, a));
+  const square = dot(a, a);
+  if (square > 1e-280 && square < 1e280) return Math.sqrt(square);
+  const largest = a.reduce((most, value) => Math.max(most, Math.abs(value)), 0);
+  if (largest === 0 || !Number.isFinite(largest)) return largest;
+  const scaled = a.map((value) => value / largest);
+  return largest * Math.sqrt(dot(scaled, scaled));
 }
 
 /** a ← a + factor·b. */

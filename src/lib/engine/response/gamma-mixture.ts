@@ -1,8 +1,9 @@
+import { cos, pow, sin } from '../elementary';
 import { EngineError, requireFinite, requireNotNegative } from '../errors';
-import type { Seconds } from '../units';
+import type { Hertz, Seconds } from '../units';
 import { gammaDensity } from './gamma';
 import { maximise } from './peak';
-import type { Response } from './response';
+import type { Complex, Response } from './response';
 
 /** One weighted gamma density: weight · g(t; shape, scale). */
 export interface GammaTerm {
@@ -53,10 +54,25 @@ export function gammaMixture(
   const slope = (t: Seconds) => (t < 0 || t > length ? 0 : sum(t, 'slope'));
   const integral = (t: Seconds) => (t <= 0 ? 0 : sum(Math.min(t, length), 'cumulative'));
   const peak = maximise(value, slope, 0, Math.min(length, delay + reach(terms)));
-  return { name, length, value, slope, integral, peak };
+  const shape = { name, length, value, slope, integral, peak };
+  return length === Infinity ? { ...shape, transfer: (f) => gammaTransfer(terms, delay, f) } : shape;
 }
 
 /** A time after which every term has nothing left: mean plus twelve standard deviations of the widest. */
 function reach(terms: readonly GammaTerm[]): Seconds {
   return Math.max(...terms.map(({ shape, scale }) => scale * (shape + 12 * Math.sqrt(shape))));
+}
+
+/** Σ wᵢ e^(−2πif·delay) / (1 + 2πif bᵢ)^aᵢ: the Fourier transform of an untruncated mixture. */
+function gammaTransfer(terms: readonly GammaTerm[], delay: Seconds, f: Hertz): Complex {
+  const omega = 2 * Math.PI * f;
+  let [re, im] = [0, 0];
+  for (const { weight, shape, scale } of terms) {
+    const y = omega * scale;
+    const size = weight * pow(1 + y * y, -shape / 2);
+    const angle = -shape * Math.atan(y) - omega * delay;
+    re += size * cos(angle);
+    im += size * sin(angle);
+  }
+  return { re, im };
 }

@@ -1,4 +1,9 @@
-import type { Seconds } from '../units';
+import type { Hertz, Seconds } from '../units';
+
+export interface Complex {
+  re: number;
+  im: number;
+}
 
 /**
  * A response shape: what the signal does after one unit impulse at time 0.
@@ -19,4 +24,6 @@ export interface Response {
   readonly peak: { readonly time: Seconds; readonly value: number };
   /** h′(t), where the shape has it in closed form. */
   slope?(t: Seconds): number;
+  /** H(f) = ∫ h(t) e^(−2πift) dt, where the shape has it in closed form (see `transferOf`). */
+  transfer?(f: Hertz): Complex;
 }
