@@ -13,7 +13,10 @@ export default defineConfig({
     outDir: 'build/jobs',
     emptyOutDir: true,
     rolldownOptions: {
-      input: { worker: source('server/jobs/worker.ts') },
+      input: {
+        worker: source('server/jobs/worker.ts'),
+        'search-thread': source('server/jobs/search-thread.ts')
+      },
       output: { entryFileNames: '[name].js', chunkFileNames: 'shared-[hash].js' }
     }
   }

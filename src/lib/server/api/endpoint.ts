@@ -48,6 +48,8 @@ export class Call<P, Q, B> {
     readonly params: P,
     readonly query: Q,
     readonly body: B,
+    /** The body of a call that takes a table. */
+    readonly bytes: Uint8Array,
     private readonly caller: SessionUser | null,
     private readonly membership: Membership | null
   ) {}
@@ -95,8 +97,9 @@ export function endpoint<P = Record<string, never>, Q = unknown, B = undefined, 
       const params = definition.params ? pathParams(definition.params, event.params) : (event.params as P);
       const membership = await membershipFor(definition.right, event, user);
       const query = readQuery(definition.query, event.url);
-      const body = await readBody(definition, event.request);
-      const call = new Call(event, params, query, body, user, membership);
+      const bytes = await readTable(definition, event.request);
+      const body = await readBody(definition.body, event.request);
+      const call = new Call(event, params, query, body, bytes, user, membership);
       const result = await definition.handler(call);
       if (result instanceof Response) return result;
       if (definition.answer === null) return new Response(null, { status: definition.status ?? 204 });
@@ -138,21 +141,19 @@ function readQuery<Q>(schema: z.ZodType<Q> | undefined, url: URL): Q {
   return refuse(400, `The address has ?${details[0]!.path}= wrong: ${details[0]!.message}.`, { details });
 }
 
-async function readBody<B>(
-  { body }: Definition<never, never, B, never> | AnyDefinition,
-  request: Request
-): Promise<B> {
-  if (body === undefined) return undefined as B;
-  const cap = config().documentLimit;
-  if (body === TABLE) {
-    needMedia(request, [TABLE, 'text/plain']);
-    return (await readBytes(request, cap)) as B;
-  }
-  if (body === 'multipart/form-data') {
-    needMedia(request, [body]);
-    return undefined as B;
-  }
-  return accept(body as z.ZodType<B>, await readJson(request, cap));
+const NOTHING = new Uint8Array();
+
+async function readTable({ body }: AnyDefinition, request: Request): Promise<Uint8Array> {
+  if (body !== TABLE) return NOTHING;
+  needMedia(request, [TABLE, 'text/plain']);
+  return readBytes(request, config().documentLimit);
+}
+
+async function readBody<B>(body: Definition<never, never, B, never>['body'], request: Request): Promise<B> {
+  if (body instanceof z.ZodType) return accept(body, await readJson(request, config().documentLimit));
+  // Read by the handler as it arrives.
+  if (body === 'multipart/form-data') needMedia(request, [body]);
+  return undefined as B;
 }
 
 function errorResponse(thrown: unknown, event: RequestEvent): Response {

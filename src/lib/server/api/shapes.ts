@@ -69,3 +69,4 @@ export const revisionShape = z.object({
   saveNumber: z.number().int(),
   sealedAt: moment
 });
+export const runParam = z.object({ task: z.string(), run: z.string() });
