@@ -12,6 +12,7 @@ import { RunLog, writeLog } from './log';
 import type { LogHeader, Timing } from './log-lines';
 import type { PlanRow } from './payload';
 import { rowsOf } from './performance';
+import type { PulseNews } from './pulses';
 import { makeReport, type Report } from './report';
 import { Runtime, type Stage } from './runtime';
 import { buildSchedule, type Schedule } from './schedule';
@@ -37,6 +38,8 @@ export interface RehearsalOptions {
   timing?: Timing;
   startedAt?: Date;
   onAnswer?: (answer: Answer) => void;
+  /** Told of what the simulated scanner's pulses mean, as they come. */
+  onPulse?: (news: PulseNews) => void;
 }
 
 export interface RehearsalResult {
@@ -90,7 +93,8 @@ export class Rehearsal {
       timing,
       source: 'simulated',
       frameInterval,
-      onAnswer: options.onAnswer
+      onAnswer: options.onAnswer,
+      onPulse: options.onPulse
     });
     this.#pulses = simulatePulses(this.runtime.pulses.plan, scanner, now + LEAD);
     this.#keys = answers === 'keyboard' ? [] : simulateAnswers(this.schedule, answers);
