@@ -44,7 +44,7 @@ export interface SearchOptions {
 
 /** Designs of the first cooling; doubled each time, so that a search may be stopped early or left running. */
 const FIRST_COOLING = 20_000;
-const HOT = 3e-3;
+const HOT = 1e-3;
 const COLD = 1e-4;
 const LOG_RATIO = log(COLD / HOT);
 /** Sums are made anew after so many accepted moves; rounding drifts by about 1e-13 in that time. */
