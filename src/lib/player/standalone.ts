@@ -12,7 +12,7 @@ import { showEnd } from './render/screens/end';
 import { askEntry } from './render/screens/entry';
 import { showInstructions, showOver } from './render/screens/participant';
 import { askReady } from './render/screens/ready';
-import { Sitting, type Entry } from './render/session';
+import { codeOf, listen, Sitting, type Entry } from './render/session';
 import { Speaker } from './render/speaker';
 import { RunStore } from './render/store';
 
@@ -38,6 +38,7 @@ export async function startStandalone(value: unknown, root: HTMLElement, bundle:
 async function sitThrough(sitting: Sitting, entry: Entry): Promise<boolean> {
   const hasSound = sitting.payload.document.cards.some((c) => c.items.some((i) => i.kind === 'sound'));
   const speaker = hasSound ? new Speaker(entry.profile) : null;
+  const off = leaveButtonsAlone(entry);
   try {
     await speaker?.wake();
     const check = await selfCheck(sitting, entry, speaker);
@@ -61,8 +62,19 @@ async function sitThrough(sitting: Sitting, entry: Entry): Promise<boolean> {
     refuse(sitting.root, [problem instanceof Error ? problem.message : String(problem)]);
     return new Promise(() => {});
   } finally {
+    off.forEach((end) => end());
     speaker?.close();
   }
+}
+
+/** Keys of scanner and response device never press a button, whichever key they send. */
+function leaveButtonsAlone({ profile }: Entry): (() => void)[] {
+  const keep = (event: KeyboardEvent) => {
+    const code = codeOf(event);
+    const isDevice = code === profile.triggerKey || profile.responseKeys.some((k) => k.code === code);
+    if (isDevice && event.target instanceof HTMLButtonElement) event.preventDefault();
+  };
+  return [listen('keydown', keep, true), listen('keyup', keep, true)];
 }
 
 /** Asked in answer to a press; a browser that refuses leaves the window as it is, which the log's screen facts show. */

@@ -1,4 +1,5 @@
 /** One attempt with a real screen and keyboard: ready → armed → running → over. Gives back what was kept of it. */
+import type { Profile } from '../../task/profile';
 import { makeHeader } from '../header';
 import { RunLog } from '../log';
 import type { LogEnding } from '../log';
@@ -65,7 +66,11 @@ export async function runAttempt(
       timing: entry.timing,
       frameInterval: check.frameInterval,
       onState: (state, reason) => change(state, reason),
-      onPulse: (news) => armed.pulse(news, runtime.pulses.found),
+      onPulse: (news) => {
+        armed.pulse(news, runtime.pulses.found);
+        if (news.kind === 'interval' && !news.agrees) alarm(tooSlow(news.measured, news.planned));
+        if (news.kind === 'stopped') alarm('NO PULSES');
+      },
       onAnswer: (answer) => isPractice && feedback(answer)
     });
     const armed = armedView(
@@ -102,6 +107,7 @@ export async function runAttempt(
     const stopListening = listenToRun({
       runtime,
       canvasStage,
+      profile,
       onAlarm: (text) => armed.alarm(text),
       onTurn: () => turn(!participantSees)
     });
@@ -130,6 +136,13 @@ export async function runAttempt(
     else runtime.arm(pageNow());
   });
 }
+
+/** The title is the one place that an operator sees beside a run and the participant does not. */
+const alarm = (text: string): void => {
+  document.title = text;
+};
+const tooSlow = (measured: number, planned: number): string =>
+  `SCANNER ${measured.toFixed(2)} s, PLANNED ${planned.toFixed(2)} s: stop or go on?`;
 
 function headerOf(sitting: Sitting, entry: Entry, check: CheckOutcome) {
   const { payload } = sitting;
@@ -168,13 +181,16 @@ function headerOf(sitting: Sitting, entry: Entry, check: CheckOutcome) {
 
 interface Ears {
   runtime: Runtime;
+  profile: Profile;
   canvasStage: CanvasStage;
   onAlarm: (text: string) => void;
   onTurn: () => void;
 }
 
 /** Keys, focus, visibility and full screen, until the returned function is called. */
-function listenToRun({ runtime, canvasStage, onAlarm, onTurn }: Ears): () => void {
+function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): () => void {
+  const isTaken = (code: string) =>
+    code === profile.triggerKey || profile.responseKeys.some((k) => k.code === code);
   let holding: ReturnType<typeof setTimeout> | undefined;
   let lock: WakeLockSentinel | null = null;
   const title = document.title;
@@ -188,7 +204,7 @@ function listenToRun({ runtime, canvasStage, onAlarm, onTurn }: Ears): () => voi
   const focus = (state: 'lost' | 'back') => () => {
     runtime.focus(state, pageNow());
     const isLost = state === 'lost';
-    document.title = isLost ? 'KEYS ARE LOST: click this window' : title;
+    alarm(isLost ? 'KEYS ARE LOST: click this window' : title);
     onAlarm(isLost ? 'Another window receives the keys: click into this one.' : '');
     if (isLost) letGo();
   };
@@ -205,6 +221,9 @@ function listenToRun({ runtime, canvasStage, onAlarm, onTurn }: Ears): () => voi
           letGo();
           holding = setTimeout(() => runtime.abort(pageNow(), 'ended by the operator'), HOLD);
         }
+        if (isTaken(code)) return;
+        if (code === 'KeyF' && !document.fullscreenElement)
+          void document.documentElement.requestFullscreen?.().catch(() => {});
         if (runtime.state !== 'armed') return;
         if (code === 'Backspace') runtime.disarm(page);
         else if (code === 'KeyV') onTurn();

@@ -59,9 +59,15 @@ export class RunStore {
     return new RunStore(await answer(request), bundle);
   }
 
+  /** Every attempt of this bundle; none where they cannot be read, which `failed` then says. */
   async attempts(): Promise<StoredAttempt[]> {
-    const transaction = this.#db.transaction('attempts');
-    return answer(transaction.objectStore('attempts').index('bundle').getAll(this.bundle));
+    try {
+      const transaction = this.#db.transaction('attempts');
+      return await answer(transaction.objectStore('attempts').index('bundle').getAll(this.bundle));
+    } catch (problem) {
+      this.failed = problem instanceof Error ? problem.message : String(problem);
+      return [];
+    }
   }
 
   /** Begins an attempt; its key is for `add` and `end`. */

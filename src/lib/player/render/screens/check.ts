@@ -135,7 +135,8 @@ export async function selfCheck(
     const { interval: measured, ...item } = checkFrames(frames, profile.screen.refreshRate);
     interval = measured;
     put(item);
-    if (!go.disabled) go.focus();
+    // Only where nothing else has been taken up meanwhile.
+    if (!go.disabled && document.activeElement === document.body) go.focus();
   });
   const off = [
     listen('keydown', (event) => {

@@ -18,6 +18,11 @@ export function showEnd(
   const saved = new Set<string>();
   const isComplete = record.ending.state === 'complete';
   const status = h('p', { role: 'status' }, 'Not saved yet.');
+  const title = heading(
+    isComplete ? 'Run complete.' : 'Ended early.',
+    isComplete ? 'Save it now.' : 'Kept as partial: save it now.',
+    !isComplete
+  );
   const lost = store === null || store.failed !== null;
 
   return new Promise((done) => {
@@ -28,6 +33,7 @@ export function showEnd(
           if (key !== null) await store?.markSafe(key);
           off();
           status.textContent = 'Safe to close: this window may be closed, or the next run begun.';
+          title.replaceWith(heading(isComplete ? 'Run complete.' : 'Ended early.', 'Safe to close.'));
           next.disabled = false;
           safe.disabled = true;
           next.focus();
@@ -59,11 +65,7 @@ export function showEnd(
     const left = h(
       'div',
       {},
-      heading(
-        isComplete ? 'Run complete.' : 'Ended early.',
-        isComplete ? 'Save it now.' : 'Kept as partial: save it now.',
-        !isComplete
-      ),
+      title,
       isComplete ? null : h('p', {}, `Why: ${record.ending.reason}.`),
       lost
         ? h(

@@ -107,6 +107,8 @@ export function armedView(
   );
   const foot = [
     h('span', {}, keyCap('Backspace'), ' disarm'),
+    h('span', {}, keyCap('V'), ' participant’s page'),
+    h('span', {}, keyCap('F'), ' full screen'),
     h(
       'span',
       {},
