@@ -1,15 +1,15 @@
 /**
  * A witness of what was on screen in which frame, outside the player: put into the page before any of its scripts,
- * it keeps the frame timestamps of its own `requestAnimationFrame` loop, and reads the pixels of the page's canvas
- * once the frame's callbacks are over. It knows nothing of the task; a change of picture is a change of pixels.
+ * it runs first in every frame and reads the pixels of the page's canvas, which are then still those of the frame
+ * before. It knows nothing of the task; a change of picture is a change of pixels.
  */
 import type { Page } from '@playwright/test';
 
 export interface WitnessedFrame {
   /** Timestamp of the frame, ms of the page's clock. */
   at: number;
-  /** Hash of the coarse picture seen at its end; null where the next frame began before it could be read. */
-  seen: number | null;
+  /** Hash of the picture that stood in the middle of the screen at its end; 0 while the canvas lies under something else. */
+  seen: number;
   /** Whether the picture is all of one colour. */
   blank: boolean;
 }
@@ -23,44 +23,39 @@ export interface Testimony {
   keys: WitnessedKey[];
 }
 
-/** Runs in the page. `addInitScript` takes its text, so it may use nothing from outside. */
+/** Runs in the page. The browser gets its text, so it may use nothing from outside. */
 function observe(): void {
   const frames: WitnessedFrame[] = [];
   const keys: WitnessedKey[] = [];
-  const width = 192;
-  const height = 108;
+  // The middle of the screen, coarsely: more pixels a frame would make the browser clear memory within a run.
+  const width = 64;
+  const height = 36;
   const small = document.createElement('canvas');
   small.width = width;
   small.height = height;
   const pen = small.getContext('2d', { willReadFrequently: true })!;
   pen.imageSmoothingEnabled = false;
-  let current = 0;
-  const afterFrame = new MessageChannel();
-  afterFrame.port1.onmessage = (event: MessageEvent<number>) => {
-    const frame = frames[event.data];
-    // Another frame has begun: what is on the canvas now may be its picture.
-    if (!frame || event.data !== current - 1) return;
-    const canvas = [...document.querySelectorAll('canvas')].sort(
-      (a, b) => b.width * b.height - a.width * a.height
-    )[0];
-    if (!canvas) return;
-    pen.drawImage(canvas, 0, 0, width, height);
+  const look = (frame: WitnessedFrame) => {
+    const canvas = document.querySelector('canvas');
+    if (!canvas || document.elementFromPoint(innerWidth / 2, innerHeight / 2) !== canvas) return;
+    const { width: w, height: h } = canvas;
+    pen.drawImage(canvas, w / 4, h / 4, w / 2, h / 2, 0, 0, width, height);
     const pixels = new Uint32Array(pen.getImageData(0, 0, width, height).data.buffer);
     // FNV-1a over whole pixels.
     let hash = 2166136261;
-    let blank = true;
+    frame.blank = true;
     for (const pixel of pixels) {
       hash = Math.imul(hash ^ pixel, 16777619);
-      if (pixel !== pixels[0]) blank = false;
+      if (pixel !== pixels[0]) frame.blank = false;
     }
     frame.seen = hash >>> 0;
-    frame.blank = blank;
   };
   const watch = (at: number) => {
-    frames.push({ at, seen: null, blank: true });
-    current = frames.length;
-    afterFrame.port2.postMessage(current - 1);
+    // First, before any other callback of this frame has drawn.
     requestAnimationFrame(watch);
+    const last = frames.at(-1);
+    if (last) look(last);
+    frames.push({ at, seen: 0, blank: true });
   };
   requestAnimationFrame(watch);
   addEventListener('keydown', (event) => keys.push({ code: event.code, at: event.timeStamp }), true);
@@ -73,31 +68,6 @@ export const callWitness = (page: Page): Promise<unknown> =>
 
 export const hearWitness = (page: Page): Promise<Testimony> =>
   page.evaluate(() => (window as unknown as { ebblineWitness: Testimony }).ebblineWitness);
-
-export interface SeenChange {
-  /** ms of the page's clock, timestamp of the first frame with the new picture. */
-  at: number;
-  blank: boolean;
-}
-
-/** Frames in which the picture became another one, between two times. Throws where the witness did not see enough. */
-export function seenChanges({ frames }: Testimony, from: number, to: number): SeenChange[] {
-  const within = frames.filter((frame) => frame.at >= from && frame.at <= to);
-  const changes: SeenChange[] = [];
-  let last: WitnessedFrame | null = null;
-  let unseen: WitnessedFrame | null = null;
-  for (const frame of within) {
-    if (frame.seen === null) {
-      unseen ??= frame;
-      continue;
-    }
-    // A change found after frames that could not be read began in the first of them at the earliest.
-    if (last && frame.seen !== last.seen) changes.push({ at: unseen?.at ?? frame.at, blank: frame.blank });
-    last = frame;
-    unseen = null;
-  }
-  return changes;
-}
 
 /** Median time between frames, ms. */
 export function frameInterval({ frames }: Testimony): number {
