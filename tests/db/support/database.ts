@@ -15,7 +15,10 @@ export interface TestDatabase {
 }
 
 /** Call at the top of a test file; the handles are there once its tests run. */
-export function useDatabase({ template = TEMPLATE }: { template?: string | null } = {}): TestDatabase {
+export function useDatabase({
+  template = TEMPLATE,
+  origin = 'http://ebbline.test'
+}: { template?: string | null; origin?: string } = {}): TestDatabase {
   const name = `t_${crypto.randomUUID().replaceAll('-', '')}`;
   const made = { url: '', ownerUrl: '' } as TestDatabase;
   const asServerOwner = async (sql: string, names: string[]) => {
@@ -35,7 +38,7 @@ export function useDatabase({ template = TEMPLATE }: { template?: string | null 
     process.env.DATABASE_OWNER_URL = made.ownerUrl;
     process.env.EBBLINE_DATA = join(inject('dataFolder'), name);
     process.env.HOST = '127.0.0.1';
-    process.env.ORIGIN = 'http://ebbline.test';
+    process.env.ORIGIN = origin;
     made.db = database();
     made.owner = connect(made.ownerUrl, 2);
   });
