@@ -61,7 +61,7 @@ export function reorderSelection(editor: TaskEditor, way: -1 | 1): void {
   const ids = places.map((i) => trials[i]!.trial.id);
   if (editor.apply((doc) => moveTrialAfter(doc, editor.runId, ids, after)))
     editor.announce(
-      `${selectionText(editor)} moved ${way < 0 ? 'before' : 'behind'} trial ${passed.index}, ${passed.card.name}.`
+      `Moved ${way < 0 ? 'before' : 'behind'} ${passed.card.name}: now ${selectionText(editor)} of ${trials.length}.`
     );
 }
 

@@ -83,14 +83,10 @@ export class DesignView {
     const { compiled, factors, shown } = this.#host;
     const scales = this.#scales;
     const grid = this.drawGrid;
+    const even = { from: grid.from * MICROS, step: grid.step * MICROS, count: grid.count };
     const signal = this.#drawn.get(
       JSON.stringify([[...scales], grid]),
-      () =>
-        new LiveSignal(
-          RESPONSE,
-          Float64Array.from({ length: grid.count }, (_, i) => grid.from + i * grid.step),
-          scales
-        )
+      () => new LiveSignal(RESPONSE, even, scales)
     );
     signal.update(compiled.events);
     return factors.map((factor) => ({
@@ -106,10 +102,10 @@ export class DesignView {
     const scales = this.#scales;
     const { tr, highPass, noise, contrasts } = shown.brief;
     const sampling = [profile.acquisitionTime, profile.acquisitionStart, profile.sliceReference];
-    const signal = this.#sampled.get(
-      JSON.stringify([[...scales], tr, run.volumes, sampling]),
-      () => new LiveSignal(RESPONSE, runTimes(shown, run, profile), scales)
-    );
+    const signal = this.#sampled.get(JSON.stringify([[...scales], tr, run.volumes, sampling]), () => {
+      const from = (runTimes(shown, run, profile)[0] ?? 0) * MICROS;
+      return new LiveSignal(RESPONSE, { from, step: tr, count: run.volumes }, scales);
+    });
     signal.update(compiled.events);
     return designReport({
       tr: toSeconds(tr),

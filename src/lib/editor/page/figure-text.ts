@@ -11,3 +11,9 @@ export function efficiencyText(value: number): string {
 /** Two decimals; ∞ where a column is the sum of others. */
 export const inflationText = (value: number): string =>
   !Number.isFinite(value) ? '∞' : value >= 1000 ? '> 1,000' : value.toFixed(2);
+
+/** Two decimals with a true minus sign; never −0.00. */
+export function signedText(value: number): string {
+  const text = value.toFixed(2);
+  return text === '-0.00' ? '0.00' : text.replace('-', '−');
+}

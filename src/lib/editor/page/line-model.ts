@@ -32,6 +32,8 @@ export interface LineModel {
   blocks: Block[];
   tails: Tail[];
   gaps: GapMark[];
+  /** The blocks as the drag library lists them. */
+  items: { id: string }[];
 }
 
 /** A grip is never wider than its blank, nor too thin to be seen. */
@@ -41,19 +43,21 @@ export function lineModels(g: PageGeometry, trials: readonly CompiledTrial[]): M
   const lines = new Map<number, LineModel>();
   const on = (line: number): LineModel => {
     let model = lines.get(line);
-    if (!model) lines.set(line, (model = { blocks: [], tails: [], gaps: [] }));
+    if (!model) lines.set(line, (model = { blocks: [], tails: [], gaps: [], items: [] }));
     return model;
   };
   trials.forEach((trial, i) => {
     for (const stretch of stretches(g, trial.onset, trial.end))
-      if (stretch.begins)
-        on(stretch.line).blocks.push({
+      if (stretch.begins) {
+        const model = on(stretch.line);
+        model.items.push({ id: trial.trial.id });
+        model.blocks.push({
           trial,
           x: stretch.x,
           width: Math.max(2, stretch.width),
           ends: stretch.ends
         });
-      else on(stretch.line).tails.push({ trial, stretch });
+      } else on(stretch.line).tails.push({ trial, stretch });
     const next = trials[i + 1];
     if (next) {
       const mark = gapMark(g, trial, next);
@@ -62,6 +66,42 @@ export function lineModels(g: PageGeometry, trials: readonly CompiledTrial[]): M
   });
   return lines;
 }
+
+/**
+ * Keeps the models of lines on which nothing has changed, so that what is drawn from them is not drawn again: in a drag
+ * most lines stay as they are.
+ */
+export class LineMemory {
+  #lines = new Map<number, { key: string; model: LineModel }>();
+  #cards: unknown = null;
+
+  /** `cards` is what else blocks are drawn from; another one drops everything. */
+  keep(g: PageGeometry, models: Map<number, LineModel>, cards: unknown): Map<number, LineModel> {
+    const known = cards === this.#cards ? this.#lines : new Map<number, { key: string; model: LineModel }>();
+    this.#cards = cards;
+    this.#lines = new Map();
+    for (const [line, model] of models) {
+      const key = `${g.width} ${g.lineLength} ${signature(model)}`;
+      const before = known.get(line);
+      if (before?.key === key) models.set(line, before.model);
+      // Moved blocks are the same list to the drag library, which need not go through them again.
+      else if (before && sameItems(before.model.items, model.items)) model.items = before.model.items;
+      this.#lines.set(line, { key, model: models.get(line) ?? model });
+    }
+    return models;
+  }
+}
+
+const sameItems = (a: { id: string }[], b: { id: string }[]): boolean =>
+  a.length === b.length && a.every((item, i) => item.id === b[i]?.id);
+const mark = (t: CompiledTrial): string =>
+  `${t.trial.id},${t.onset},${t.length},${t.index},${t.card.id},${t.trial.locked ?? ''}`;
+const signature = (model: LineModel): string =>
+  [
+    model.blocks.map((b) => mark(b.trial)).join(';'),
+    model.tails.map((t) => mark(t.trial)).join(';'),
+    model.gaps.map((m) => `${m.trial.trial.id},${m.gap}`).join(';')
+  ].join('|');
 
 /** The grip stands on the line where the trial ends, in the middle of what is blank there. */
 function gapMark(g: PageGeometry, trial: CompiledTrial, next: CompiledTrial): GapMark & { line: number } {

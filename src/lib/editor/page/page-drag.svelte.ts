@@ -54,7 +54,7 @@ export class PageDrag {
     readonly editor: TaskEditor,
     /** Where a point of the window lies on the Page, or null beside it; `grab` px are taken off for the onset. */
     readonly locate: (x: number, y: number, grab: number) => PagePoint | null,
-    /** Called after a drop with the trial that was under the pointer. */
+    /** Called when a drag has ended, with the trial that was under the pointer: it gets the focus back. */
     readonly onDropped: (trialId: string) => void
   ) {}
 
@@ -101,10 +101,12 @@ export class PageDrag {
   /** Escape: the library knows no cancel, so it is told that the button was let go, and its answer is ignored. */
   cancel(): void {
     if (!this.#dragged) return;
+    const { what } = this.#dragged;
     this.#isCancelled = true;
     window.dispatchEvent(new MouseEvent('mouseup'));
     this.#end(false);
     this.editor.announce('Move cancelled; everything is where it was.');
+    if (what.kind === 'trials' && what.ids[0]) this.onDropped(what.ids[0]);
   }
 
   #begin(what: Dragged['what'], grab: number, length: number): void {
