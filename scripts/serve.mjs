@@ -3,6 +3,7 @@
  * for jobs, and the built application. INT, TERM and HUP stop all of it.   node scripts/serve.mjs [port]
  */
 import { spawn } from 'node:child_process';
+import { once } from 'node:events';
 import { existsSync } from 'node:fs';
 import { dirname, join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
@@ -67,9 +68,10 @@ async function main() {
   await refuseNewerData(env.DATABASE_OWNER_URL || env.DATABASE_URL, join(project, 'migrations'));
 
   process.on('sveltekit:shutdown', stopRest);
-  await import('../build/index.js');
+  const { server } = await import('../build/index.js');
   serving = true;
   if (stopping) return void process.emit('SIGTERM');
+  if (!server.server.listening) await once(server.server, 'listening');
   startWorker();
   console.log(`Ebbline is ready: open ${env.ORIGIN} in a browser. Data: ${dataFolder()}. Stop with Ctrl+C.`);
 }

@@ -59,6 +59,7 @@ function checkWritable() {
   }
 }
 
+/** Runs a step and says how long it took; what it printed is shown only when it fails. */
 function run(words, command, args) {
   const began = Date.now();
   console.log(`${words} ...`);
@@ -66,11 +67,18 @@ function run(words, command, args) {
   // A parent npm exports its own settings; drop those that could change what a child npm does.
   for (const name of ['NODE_ENV', 'npm_config_omit', 'npm_config_global', 'npm_config_prefix'])
     delete env[name];
-  const done = spawnSync(command, args, { stdio: 'inherit', env });
-  if (done.status !== 0)
+  const done = spawnSync(command, args, {
+    stdio: ['ignore', 'pipe', 'pipe'],
+    encoding: 'utf8',
+    maxBuffer: 1 << 28,
+    env
+  });
+  if (done.status !== 0) {
+    console.error(`${done.stdout ?? ''}${done.stderr ?? ''}`.trim());
     throw new PlainError(
       `${words} failed: ${command} ${args.join(' ')} ended with ${done.error ?? done.status}.`
     );
+  }
   console.log(`${words}: ${((Date.now() - began) / 1000).toFixed(1)} s`);
 }
 

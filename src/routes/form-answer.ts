@@ -67,19 +67,19 @@ export function readNumber(
 ): { value: number; problem: null } | { value: null; problem: FieldError } {
   const text = (typed[path] ?? '').trim();
   const wrong = (why: string) => ({ value: null, problem: { path, message: why } });
-  if (!text) return wrong(`${what} is empty: write ${whole ? 'a whole number' : 'a number'} of ${unit}.`);
-  if (/^-?\d+,\d+$/.test(text))
-    return wrong(`${what} is ‘${text}’: write it with a point, ${text.replace(',', '.')}.`);
-  if (!/^[-+]?(\d+\.?\d*|\.\d+)$/.test(text))
+  if (!text)
     return wrong(
-      `${what} is ‘${text}’, which is not a number: write ${unit} as digits, for example ${whole ? 300 : 1.5}.`
+      `Write ${whole ? 'a whole number' : 'a number'} of ${unit}, for example ${whole ? 300 : 1.5}.`
     );
+  if (/^-?\d+,\d+$/.test(text))
+    return wrong(`‘${text}’ has a comma: write it with a point, ${text.replace(',', '.')}.`);
+  if (!/^[-+]?(\d+\.?\d*|\.\d+)$/.test(text))
+    return wrong(`‘${text}’ is not a number of ${unit}: write digits, for example ${whole ? 300 : 1.5}.`);
   const value = Number(text);
-  if (whole && !Number.isInteger(value))
-    return wrong(`${what} is ${text}: it must be a whole number of ${unit}.`);
-  if (value <= above) return wrong(`${what} is ${text}: it must be more than ${above} ${unit}.`);
+  if (whole && !Number.isInteger(value)) return wrong(`${text} is not a whole number of ${unit}.`);
+  if (value <= above) return wrong(`${text} is too small: ${what} must be more than ${above} ${unit}.`);
   if (value > most)
-    return wrong(`${what} is ${text}: at most ${most.toLocaleString('en')} ${unit} can be planned.`);
+    return wrong(`${text} is too large: ${what} must be at most ${most.toLocaleString('en')} ${unit}.`);
   return { value, problem: null };
 }
 interface NumberRule {

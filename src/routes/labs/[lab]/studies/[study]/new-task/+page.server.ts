@@ -40,7 +40,7 @@ export const actions: Actions = {
     const typed = await readForm(request);
     const tr = readNumber(typed, 'tr', { what: 'TR', unit: 'seconds', above: 0, most: 60 });
     const volumes = readNumber(typed, 'volumes', {
-      what: 'Volumes',
+      what: 'a run',
       unit: 'volumes',
       whole: true,
       above: 0,

@@ -1,0 +1,1 @@
+export function refuseNewerData(url: string, folder: string): Promise<void>;
