@@ -10,12 +10,18 @@ export type Hertz = number;
 /** Task documents cannot tell times apart that are closer than this; the engine snaps edges within half of it. */
 export const MICRO: Seconds = 1e-6;
 
-/** Microseconds → seconds, the double nearest to the decimal fraction: `secondsOf(735000)` is `0.735`. */
+/**
+ * Microseconds → seconds, the double nearest to the decimal fraction.
+ * @example secondsOf(735000) // 0.735
+ */
 export function secondsOf(micros: Micros): Seconds {
   return micros / 1e6;
 }
 
-/** Seconds → whole microseconds, rounded to nearest: `microsOf(0.735)` is `735000`. */
+/**
+ * Seconds → whole microseconds, rounded to nearest.
+ * @example microsOf(0.735) // 735000
+ */
 export function microsOf(seconds: Seconds): Micros {
   return Math.round(seconds * 1e6);
 }

@@ -7,6 +7,8 @@ import { criteriaOf, detectionPower, identityRows, overMembers } from '$lib/engi
 import { ordinaryReport } from '$lib/engine/design/ordinary';
 import { designReport } from '$lib/engine/design/report';
 import { rowSpaceOf } from '$lib/engine/design/row-space';
+import { twoAims } from '$lib/engine/design/two-aims';
+import { eigenSymmetric } from '$lib/engine/linalg/eigen';
 import type { NoiseModel } from '$lib/engine/noise/model';
 import { doubleGammaWithDerivatives } from '$lib/engine/response/bases';
 import { doubleGamma } from '$lib/engine/response/double-gamma';
@@ -77,6 +79,57 @@ describe('estimation: FIR designs (statsmodels, R, direct formula)', () => {
       expectNear(a, contrast.A_efficiency_r_over_trace);
       expectNear(d, contrast.D_efficiency);
     }
+  });
+
+  it.each(settings)(
+    'shape fixed to the response at the lags, and the range of eigenvalues: %s',
+    (setting, highPass, noise) => {
+      const expected = designs.random2[setting as 'const | white'].fir;
+      const { information } = estimation(designs.random2.onset_volumes, highPass, noise);
+      const { values } = eigenSymmetric(information);
+      expectNear(values[0]!, expected.max_eig_of_information);
+      expectNear(values.at(-1)!, expected.min_eig_of_information);
+      // Weighing the lags by h₀ turns each condition's eight columns into one.
+      const fixed = [0, 1].map((i) =>
+        [0, 1].map((j) =>
+          h0.reduce(
+            (sum, a, k) =>
+              sum + h0.reduce((rest, b, l) => rest + a * b * information[i * lags + k]![j * lags + l]!, 0),
+            0
+          )
+        )
+      );
+      const space = rowSpaceOf(fixed);
+      expectNear(criteriaOf(space, [[1, 0]]).a, expected.shape_fixed_to_h0.A);
+      expectNear(criteriaOf(space, [[0, 1]]).a, expected.shape_fixed_to_h0.B);
+      expectNear(criteriaOf(space, [[1, -1]]).a, expected.shape_fixed_to_h0['A-B']);
+    }
+  );
+
+  it('both aims at once, over runs', () => {
+    const conditions = Object.entries(designs.random2.onset_volumes).map(([name, at]) => ({
+      name,
+      events: events(at)
+    }));
+    const run = { tr, volumes, modelledAt: start, conditions, highPass: 128, noise: ar };
+    const one = twoAims([run], doubleGamma(), 16);
+    const { contrasts } = designReport({
+      ...run,
+      columns: detectionColumns(conditions, doubleGamma(), start),
+      contrasts: [
+        [1, 0],
+        [0, 1],
+        [1, -1]
+      ].map((weights) => ({ name: `${weights}`, weights }))
+    });
+    expectNear(one.detection.a, 3 / contrasts.reduce((sum, { efficiency }) => sum + 1 / efficiency, 0));
+    const expected = designs.random2['const+dct128 | ar1_0.3'].fir;
+    expectNear(one.estimation.d, expected.D_efficiency);
+    const traces = [expected.contrast_A, expected.contrast_B, expected.contrast_A_minus_B];
+    expectNear(one.estimation.a, 24 / traces.reduce((sum, { trace_of_covariance: trace }) => sum + trace, 0));
+    const two = twoAims([run, run], doubleGamma(), 16);
+    expectNear(two.detection.a, 2 * one.detection.a);
+    expectNear(two.estimation.d, 2 * one.estimation.d);
   });
 
   it('ten lags of 2 s every 20 s: rank 10 of 11 with the constant, and the columns are named', () => {

@@ -173,6 +173,21 @@ describe('given autocorrelation', () => {
     );
   });
 
+  it('stops growing its predictor where nothing changes any more, and still inverts V', () => {
+    const volumes = 260;
+    const whitener = whitenerOf({ kind: 'given', correlations: [0.3, 0.1] }, { tr: 2, volumes, times: null });
+    const v = toeplitz(volumes, (lag) => [1, 0.3, 0.1][lag] ?? 0);
+    const wave = Float64Array.from({ length: volumes }, (_, n) => Math.sin(n * n));
+    // (Wy)ᵀ(Wy) = yᵀV⁻¹y, so for y = Vx it is xᵀVx.
+    const y = Float64Array.from(times(v, wave));
+    const whitened = whitener.apply(y);
+    const form = wave.reduce((sum, value, i) => sum + value * y[i]!, 0);
+    expectNear(
+      whitened.reduce((sum, value) => sum + value * value, 0),
+      form
+    );
+  });
+
   it('refuses a list that no noise can have', () => {
     expect(() => precision({ kind: 'given', correlations: [0.9, 0] }, 10)).toThrow(
       /given autocorrelation up to lag/

@@ -8,7 +8,7 @@ import type { DesignEvent } from './event';
  * Numbers are multiplied onto heights the events already have.
  * @param values one finite number per event
  * Errors: `EngineError` for another count or a gap.
- * @example modulated([{ onset: 0, duration: 0 }, { onset: 20, duration: 0 }], [1, 3]) // heights −1 and 1
+ * @example modulated([{ onset: 0, duration: 0 }, { onset: 20, duration: 0 }], [1, 3]).map((e) => e.height) // -1, 1
  */
 export function modulated(
   events: readonly DesignEvent[],

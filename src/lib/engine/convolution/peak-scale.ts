@@ -8,6 +8,7 @@ import type { Seconds } from '../units';
  *
  * For an impulse it is the peak of the shape. For a boxcar it solves h(t) = h(t − d); the only places where the
  * maximum can lie are the first `length` seconds and the first `length` seconds after the end of the event.
+ * @example singleEventPeak(doubleGamma(), 2) // { time: 6.0639991450042, value: 0.3395001097496391 }
  */
 export function singleEventPeak(response: Response, duration: Seconds): { time: Seconds; value: number } {
   requireNotNegative('event duration', duration, 'Use 0 for a brief event or the length in seconds.');

@@ -1,3 +1,4 @@
+import { choleskyFactor, inverseDiagonal } from '../linalg/cholesky';
 import { eigenSymmetric } from '../linalg/eigen';
 import { RANK_TOLERANCE } from './row-space';
 
@@ -27,22 +28,30 @@ export function inflationFrom(
   squares: readonly number[]
 ): number[] {
   const scaled = scaledToUnitDiagonal(cross, squares);
+  const isLeft = (j: number) => cross[j]![j]! > NOTHING_LEFT * squares[j]!;
+  const inverse = inverseDiagonalOf(scaled);
+  return totals.map((total, j) => (isLeft(j) ? (total / cross[j]![j]!) * inverse[j]! : Infinity));
+}
+
+/** Diagonal of the inverse of a correlation matrix; Infinity for columns that take part in a dependence. */
+function inverseDiagonalOf(scaled: readonly (readonly number[])[]): number[] {
+  const factor = choleskyFactor(scaled, WELL_CONDITIONED);
+  if (factor) return inverseDiagonal(factor);
   const { values, vectors } = eigenSymmetric(scaled);
-  const size = cross.length;
-  return totals.map((total, j) => {
-    const own = cross[j]![j]!;
-    if (!(own > NOTHING_LEFT * squares[j]!)) return Infinity;
+  return scaled.map((_, j) => {
     let inverse = 0;
-    for (let k = 0; k < size; k += 1) {
+    for (let k = 0; k < values.length; k += 1) {
       const share = vectors[k]![j]! ** 2;
-      if (values[k]! > RANK_TOLERANCE * size) inverse += share / values[k]!;
+      if (values[k]! > RANK_TOLERANCE * values.length) inverse += share / values[k]!;
       // Rounding leaves shares of about 1e-15 in columns that have no part in a dependence.
       else if (share > 1e-12) return Infinity;
     }
-    return (total / own) * inverse;
+    return inverse;
   });
 }
 
+/** A pivot this large leaves the quick way nine digits; below it the eigenvectors decide. */
+const WELL_CONDITIONED = 1e-6;
 /** Squared share of a column below which nothing is left of it beside the nuisance. */
 const NOTHING_LEFT = 1e-16;
 

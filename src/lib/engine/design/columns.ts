@@ -46,7 +46,6 @@ export function basisColumns(
 
 /**
  * Estimation columns: `lags` finite impulse response columns of `width` seconds per condition, events as impulses.
- * @example estimationColumns(conditions, 12, 2, times) // 24 s at lags of 2 s
  */
 export function estimationColumns(
   conditions: readonly ConditionEvents[],

@@ -1,7 +1,7 @@
-import { eigenSymmetric } from '../linalg/eigen';
+import { choleskyFactor } from '../linalg/cholesky';
 import { exp, log } from '../elementary';
 import { requireContrast } from './contrast';
-import { ESTIMABLE_TOLERANCE, readContrast, type RowSpace } from './row-space';
+import { readContrast, type RowSpace } from './row-space';
 
 /** How well a set of contrasts is measured together. */
 export interface Criteria {
@@ -28,15 +28,16 @@ export function criteriaOf(space: RowSpace, rows: readonly (readonly number[])[]
   const blind = readings.findIndex((reading) => !reading.estimable);
   if (blind >= 0) return { a: 0, d: 0, reason: `Contrast ${blind + 1} of the set cannot be estimated.` };
 
-  const covariance = covarianceOf(space, rows);
-  const trace = covariance.reduce((sum, row, i) => sum + row[i]!, 0);
-  const a = rows.length / trace;
-  const { values } = eigenSymmetric(covariance);
-  if (!(values.at(-1)! > ESTIMABLE_TOLERANCE * 1e-4 * values[0]!))
+  const a = rows.length / readings.reduce((trace, { variance }) => trace + variance, 0);
+  const factor = rows.length > space.rank ? null : choleskyFactor(covarianceOf(space, rows), INDEPENDENT);
+  if (factor === null)
     return { a, d: 0, reason: 'The contrasts of the set depend on each other, so they have no D criterion.' };
-  const logDeterminant = values.reduce((sum, value) => sum + log(value), 0);
+  const logDeterminant = factor.reduce((sum, row, i) => sum + 2 * log(row[i]!), 0);
   return { a, d: exp(-logDeterminant / rows.length), reason: null };
 }
+
+/** Share of its variance that a contrast must keep beside the earlier ones to count as one of its own. */
+const INDEPENDENT = 1e-10;
 
 /** C M⁺ Cᵀ for estimable rows. */
 export function covarianceOf(space: RowSpace, rows: readonly (readonly number[])[]): number[][] {
@@ -52,7 +53,10 @@ export function covarianceOf(space: RowSpace, rows: readonly (readonly number[])
   return shares.map((x) => shares.map((y) => x.reduce((sum, value, k) => sum + value * y[k]!, 0)));
 }
 
-/** One contrast between conditions, asked of every lag: c ⊗ I, `members` rows. */
+/**
+ * One contrast between conditions, asked of every lag: c ⊗ I, `members` rows.
+ * @example overMembers([1, -1], 2) // [1, 0, -1, 0], [0, 1, 0, -1]
+ */
 export function overMembers(weights: readonly number[], members: number): number[][] {
   return Array.from({ length: members }, (_, k) =>
     weights.flatMap((weight) => Array.from({ length: members }, (_value, j) => (j === k ? weight : 0)))
@@ -64,7 +68,10 @@ export function identityRows(columns: number): number[][] {
   return overMembers([1], columns);
 }
 
-/** Each condition against baseline and every pair of conditions: Q + Q(Q−1)/2 rows. */
+/**
+ * Each condition against baseline and every pair of conditions: Q + Q(Q−1)/2 rows.
+ * @example individualAndPairs(2) // [1, 0], [0, 1], [1, -1]
+ */
 export function individualAndPairs(conditions: number): number[][] {
   const unit = (j: number): number[] => Array.from({ length: conditions }, (_, i) => (i === j ? 1 : 0));
   const rows = Array.from({ length: conditions }, (_, j) => unit(j));
@@ -79,6 +86,7 @@ export function individualAndPairs(conditions: number): number[][] {
  * Source: Liu TT, Frank LR, Wong EC, Buxton RB (2001) NeuroImage 13:759–773.
  * @param information K × K
  * @param shape h₀, K numbers; all 0 gives 0
+ * @example detectionPower([[2, 0], [0, 4]], [1, 1]) // 3
  */
 export function detectionPower(
   information: readonly (readonly number[])[],

@@ -15,7 +15,10 @@ export interface Spectrum {
   energy: Float64Array;
 }
 
-/** The frequencies of a run: k/(N·TR) for k = 1…⌊N/2⌋, Hz. */
+/**
+ * The frequencies of a run: k/(N·TR) for k = 1…⌊N/2⌋, Hz.
+ * @example runFrequencies(5, 2) // 0.1, 0.2
+ */
 export function runFrequencies(volumes: number, tr: Seconds): Float64Array {
   requirePositive('repetition time', tr, 'Give the TR in seconds.');
   return Float64Array.from({ length: Math.floor(volumes / 2) }, (_, k) => (k + 1) / (volumes * tr));

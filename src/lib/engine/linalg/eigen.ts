@@ -11,6 +11,7 @@ export interface Eigen {
  * Only the upper triangle is read. Eigenvectors are signed so that their largest entry is positive.
  * Source: Golub GH, Van Loan CF, Matrix Computations, section 8.5 (from memory; A·v = λ·v is tested).
  * @param matrix p × p, symmetric
+ * @example eigenSymmetric([[2, 1], [1, 2]]).values // 3, 1
  */
 export function eigenSymmetric(matrix: readonly (readonly number[])[]): Eigen {
   const size = matrix.length;

@@ -1,4 +1,7 @@
-/** Σ aᵢbᵢ over the length of `a`. Summed in index order, so the same on every machine. */
+/**
+ * Σ aᵢbᵢ over the length of `a`. Summed in index order, so the same on every machine.
+ * @example dot([1, 2], [3, 4]) // 11
+ */
 export function dot(a: Float64Array, b: Float64Array): number {
   let sum = 0;
   for (let i = 0; i < a.length; i += 1) sum += a[i]! * b[i]!;

@@ -62,6 +62,7 @@ export function dctDriftAt(times: ArrayLike<Seconds>, cutoff: Seconds): Float64A
  *
  * @returns `order` columns of length N; orders above N − 1 are left out, they would add nothing
  * Source: Legendre polynomials, textbook.
+ * @example polynomialDrift(3, 1) // [[-1 / Math.SQRT2, 0, 1 / Math.SQRT2]]
  */
 export function polynomialDrift(volumes: number, order: number): Float64Array[] {
   requireWhole('number of volumes', volumes, 1, 'Give the run at least one volume.');

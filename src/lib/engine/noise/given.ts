@@ -5,8 +5,8 @@ import type { TimeBase, Whitener } from './whitener';
 /**
  * Whitening of a given autocorrelation r₁, r₂, … (0 beyond the list): the Durbin–Levinson recursion predicts each
  * volume from those before it and returns the prediction error over its standard deviation, which is the inverse of
- * V's Cholesky factor. Predictors are made once, O(N²) numbers in the worst case; V itself is never formed or
- * inverted. Even times only.
+ * V's Cholesky factor. Predictors are made once and stop growing when they stop changing (a list that ends soon
+ * needs a few dozen coefficients); V itself is never formed or inverted. Even times only.
  *
  * Errors: `EngineError` where the list is no autocorrelation (V not positive definite) or the times are uneven.
  * Source: Durbin 1960, Levinson 1947; Golub GH, Van Loan CF, Matrix Computations, section 4.7 (from memory).
@@ -25,11 +25,20 @@ export function givenWhitener(correlations: readonly number[], base: TimeBase): 
   const scales = new Float64Array(volumes).fill(1);
   let variance = 1;
   let logDeterminant = 0;
+  let quiet = 0;
   for (let n = 1; n < volumes; n += 1) {
     const before = predictors[n - 1]!;
+    if (quiet > correlations.length) {
+      // The predictor has stopped changing: what lies further back no longer counts.
+      predictors.push(before);
+      scales[n] = scales[n - 1]!;
+      logDeterminant += log(variance);
+      continue;
+    }
     let left = r(n);
     for (let k = 0; k < n - 1; k += 1) left -= before[k]! * r(n - 1 - k);
     const partial = left / variance;
+    quiet = Math.abs(partial) < SILENT ? quiet + 1 : 0;
     variance *= 1 - partial * partial;
     if (!(variance > 1e-12))
       throw new EngineError(
@@ -50,9 +59,12 @@ export function givenWhitener(correlations: readonly number[], base: TimeBase): 
     return column.map((value, n) => {
       const predictor = predictors[n]!;
       let rest = value;
-      for (let k = 0; k < n; k += 1) rest -= predictor[k]! * column[n - 1 - k]!;
+      for (let k = 0; k < predictor.length; k += 1) rest -= predictor[k]! * column[n - 1 - k]!;
       return rest * scales[n]!;
     });
   }
   return { apply, logDeterminant };
 }
+
+/** A partial correlation below this changes no double any more. */
+const SILENT = 1e-17;

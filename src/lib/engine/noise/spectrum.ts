@@ -8,6 +8,7 @@ import { oneOverFSpectrum } from './one-over-f';
  * Two-sided spectrum of AR(1) noise of variance 1, per unit of f·TR: (1−ρ²)/(1 − 2ρ cos 2πf·TR + ρ²). Its integral
  * over one period of f·TR is 1.
  * @param cycles f·TR, cycles per volume
+ * @example ar1Density(0.3, 0) // 1.3 / 0.7
  */
 export function ar1Density(rho: number, cycles: number): number {
   return (1 - rho * rho) / (1 - 2 * rho * cos(2 * Math.PI * cycles) + rho * rho);

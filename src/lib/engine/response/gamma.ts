@@ -35,7 +35,10 @@ function wholeGamma(n: number): number {
   return product;
 }
 
-/** ln Γ(x) for x > 0. */
+/**
+ * ln Γ(x) for x > 0.
+ * @example logGamma(6) // Math.log(120)
+ */
 export function logGamma(x: number): number {
   requirePositive('argument of ln Γ', x, 'Give a shape above 0.');
   if (Number.isInteger(x) && x <= 20) return log(wholeGamma(x));
@@ -52,7 +55,10 @@ export function logGamma(x: number): number {
   return (shifted - 0.5) * log(shifted) - shifted + HALF_LOG_TWO_PI + sum * inverse - log(product);
 }
 
-/** Digamma ψ(x) = d ln Γ(x)/dx for x > 0. ψ(6) = 1.7061176684318005. */
+/**
+ * Digamma ψ(x) = d ln Γ(x)/dx for x > 0.
+ * @example digamma(6) // 1.7061176684318005
+ */
 export function digamma(x: number): number {
   requirePositive('argument of ψ', x, 'Give a shape above 0.');
   let shifted = x;
@@ -121,7 +127,7 @@ export function gammaDensity(shape: number, scale: number): GammaDensity {
  *
  * Below the mean the power series (all terms positive, so small values keep their relative accuracy); above it the
  * upper tail Q = 1 − P: a finite sum for whole a, Lentz's continued fraction otherwise.
- * @example regularisedGamma(1, 2) // 1 − e⁻²
+ * @example regularisedGamma(1, 2) // 1 - Math.exp(-2)
  */
 export function regularisedGamma(a: number, x: number): number {
   return lowerTail(a)(x);

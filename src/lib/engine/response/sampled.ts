@@ -12,6 +12,7 @@ import type { Response } from './response';
  * Source: Fritsch FN, Carlson RE (1980) Monotone piecewise cubic interpolation. SIAM J Numer Anal 17:238–246 (slope
  * rule: the weighted harmonic mean of Fritsch and Butland 1984; both from memory).
  * Errors: `EngineError` for fewer than two samples, gaps, step ≤ 0.
+ * @example sampledResponse('line', [0, 4, 8, 12], 2).integral(6) // 36
  */
 export function sampledResponse(name: string, samples: ArrayLike<number>, step: Seconds): Response {
   requirePositive('distance of the samples', step, 'Give it in seconds, for instance 0.5.');

@@ -39,7 +39,10 @@ export function transferOf(response: Response, f: Hertz): Complex {
   return { re, im };
 }
 
-/** |H(f)|. */
+/**
+ * |H(f)|.
+ * @example gainOf(doubleGamma({ length: Infinity }), 0) // 5 / 6
+ */
 export function gainOf(response: Response, f: Hertz): number {
   const { re, im } = transferOf(response, f);
   return Math.hypot(re, im);
