@@ -241,6 +241,7 @@ function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): 
     listen('blur', focus('lost')),
     listen('focus', focus('back')),
     listen('resize', () => canvasStage.fit()),
+    listen('contextmenu', (event) => event.preventDefault()),
     listen('beforeunload', (event) => event.preventDefault()),
     listenOn(document, 'visibilitychange', () => {
       const isHidden = document.visibilityState === 'hidden';

@@ -25,7 +25,9 @@ export class Speaker {
   }
 
   async wake(): Promise<boolean> {
-    if (this.#context.state !== 'running') await this.#context.resume();
+    // A browser that wants another press first leaves the promise open: not waited for beyond half a second.
+    const patience = new Promise((done) => setTimeout(done, 500));
+    if (this.#context.state !== 'running') await Promise.race([this.#context.resume(), patience]);
     return this.#context.state === 'running';
   }
   close(): void {
