@@ -41,7 +41,7 @@ function inverseDiagonalOf(scaled: readonly (readonly number[])[]): number[] {
   return scaled.map((_, j) => {
     let inverse = 0;
     for (let k = 0; k < values.length; k += 1) {
-      const share = vectors[k]![j]! ** 2;
+      const share = vectors[k]![j]! * vectors[k]![j]!;
       if (values[k]! > RANK_TOLERANCE * values.length) inverse += share / values[k]!;
       // Rounding leaves shares of about 1e-15 in columns that have no part in a dependence.
       else if (share > 1e-12) return Infinity;

@@ -42,15 +42,15 @@ export function ordinaryReport(
   const vq = q.map((column) => correlate(r, column));
   const inner = q.map((a) => vq.map((b) => dot(a, b)));
   const traceRV = base.volumes * r[0]! - inner.reduce((sum, row, i) => sum + row[i]!, 0);
-  let squareV = base.volumes * r[0]! ** 2;
-  for (let k = 1; k < base.volumes; k += 1) squareV += 2 * (base.volumes - k) * r[k]! ** 2;
+  let squareV = base.volumes * r[0]! * r[0]!;
+  for (let k = 1; k < base.volumes; k += 1) squareV += 2 * (base.volumes - k) * r[k]! * r[k]!;
   const squareQ = vq.reduce((sum, column) => sum + dot(column, column), 0);
   const squareInner = inner.reduce(
     (sum, row) => sum + row.reduce((total, value) => total + value * value, 0),
     0
   );
   const traceRVRV = squareV - 2 * squareQ + squareInner;
-  const effectiveDf = traceRVRV > 0 ? traceRV ** 2 / traceRVRV : 0;
+  const effectiveDf = traceRVRV > 0 ? (traceRV * traceRV) / traceRVRV : 0;
 
   let efficiency = 0;
   if (reading.estimable) {

@@ -1,4 +1,5 @@
 import { eigenSymmetric } from '../linalg/eigen';
+import { norm } from '../linalg/vector';
 
 /**
  * An information matrix taken apart, so that estimability and efficiency of any contrast are quick to read.
@@ -52,7 +53,7 @@ export function readContrast(space: RowSpace, weights: readonly number[]): Contr
     const factor = space.inverseLengths[j]!;
     return factor > 0 ? weight * factor : weight;
   });
-  const length = Math.hypot(...scaled);
+  const length = norm(Float64Array.from(scaled));
   const direction = new Array<number>(weights.length).fill(0);
   let variance = 0;
   space.vectors.forEach((vector, k) => {
@@ -61,7 +62,7 @@ export function readContrast(space: RowSpace, weights: readonly number[]): Contr
     if (k < space.rank) variance += (share * share) / space.values[k]!;
     else for (let j = 0; j < scaled.length; j += 1) direction[j]! += share * vector[j]!;
   });
-  if (Math.hypot(...direction) <= ESTIMABLE_TOLERANCE * length && length > 0)
+  if (norm(Float64Array.from(direction)) <= ESTIMABLE_TOLERANCE * length && length > 0)
     return { estimable: true, variance, blind: [] };
   const blind = direction.map((value, j) => value * (space.inverseLengths[j]! || 1));
   return { estimable: false, variance: Infinity, blind };

@@ -102,7 +102,7 @@ export function survivalOf(input: SurvivalInput): Survival {
   const { plain } = prepareSetting({ tr, volumes, highPass, noise: { kind: 'white' } });
   const rest = residualOf(values, plain.q);
   const stimulus = frequencies.map((f) => stimulusEnergy(events, f));
-  const gains = frequencies.map((f) => gainOf(response, f) ** 2);
+  const gains = frequencies.map((f) => square(gainOf(response, f)));
   const most = gains.reduce((a, b) => Math.max(a, b), 0) * sum(stimulus);
   const total = dot(centred(values), centred(values));
   return {
@@ -113,6 +113,10 @@ export function survivalOf(input: SurvivalInput): Survival {
     shareAfterResponse: most > 0 ? dot(stimulus, gains) / most : 0,
     shareAfterHighPass: total > 0 ? dot(rest, rest) / total : 0
   };
+}
+
+function square(value: number): number {
+  return value * value;
 }
 
 function sum(values: Float64Array): number {
@@ -135,7 +139,7 @@ export function steadyStateDeviation(response: Response, duration: Seconds, inte
   for (let k = 1; k < 4000 && quiet < 8; k += 1) {
     const f = k / interval;
     const half = Math.PI * f * duration;
-    const part = ((gainOf(response, f) * duration * sin(half)) / half / interval) ** 2;
+    const part = square((gainOf(response, f) * duration * sin(half)) / half / interval);
     total += part;
     quiet = part < 1e-18 * total ? quiet + 1 : 0;
   }

@@ -1,4 +1,6 @@
+import { cos } from '../elementary';
 import { requireBetween, requireWhole } from '../errors';
+import { wholePower } from '../response/gamma';
 
 /**
  * Closed forms of design theory: what a large design of a kind reaches, for the help texts and as yardsticks of the
@@ -18,7 +20,7 @@ export function tradeOff(lags: number, alpha: number, theta = 0): { estimation: 
   requireWhole('number of lags', lags, 2, 'Use the window length over the lag.');
   requireBetween('alpha', alpha, 0, 1, 'Use 1/k for random, 1 for blocks.');
   const estimation = (alpha * (1 - alpha)) / (1 + alpha * (lags * lags - 2 * lags));
-  const along = Math.cos(theta) ** 2;
+  const along = cos(theta) * cos(theta);
   return { estimation, detection: alpha * along + ((1 - alpha) / (lags - 1)) * (1 - along) };
 }
 
@@ -64,7 +66,7 @@ export function randomSpacing(probability: number, lags: number): number {
  */
 export function binaryMSequence(order: number, lags: number): number {
   requireWhole('order of the m-sequence', order, 2, 'Length is 2ⁿ − 1.');
-  const length = 2 ** order - 1;
+  const length = wholePower(2, order) - 1;
   requireBetween('number of lags', lags, 1, length - 1, 'Use fewer lags than the sequence is long.');
-  return 2 ** (order - 2) / (lags - 1 + 1 / (1 - lags / length));
+  return wholePower(2, order - 2) / (lags - 1 + 1 / (1 - lags / length));
 }

@@ -33,7 +33,7 @@ export function inverseDiagonal(factor: readonly (readonly number[])[]): number[
       let rest = i === j ? 1 : 0;
       for (let k = j; k < i; k += 1) rest -= row[k]! * column[k]!;
       column[i] = rest / row[i]!;
-      out[j]! += column[i]! ** 2;
+      out[j]! += column[i]! * column[i]!;
     }
   }
   return out;

@@ -19,7 +19,8 @@ export function ar1WhiteWhitener(rho: number, rhoTr: Seconds, share: number, bas
   let logDeterminant = 0;
   let variance = share;
   for (let n = 0; n < volumes; n += 1) {
-    if (n > 0) variance = rhos[n]! ** 2 * variance + share * (1 - rhos[n]! ** 2);
+    const kept = rhos[n]! * rhos[n]!;
+    if (n > 0) variance = kept * variance + share * (1 - kept);
     const total = variance + (1 - share);
     gains[n] = variance / total;
     scales[n] = 1 / Math.sqrt(total);

@@ -70,6 +70,7 @@ function gammaTransfer(terms: readonly GammaTerm[], delay: Seconds, f: Hertz): C
   for (const { weight, shape, scale } of terms) {
     const y = omega * scale;
     const size = weight * pow(1 + y * y, -shape / 2);
+    // The angle only ever draws a spectrum, so the language's own arctangent will do.
     const angle = -shape * Math.atan(y) - omega * delay;
     re += size * cos(angle);
     im += size * sin(angle);

@@ -45,5 +45,5 @@ export function transferOf(response: Response, f: Hertz): Complex {
  */
 export function gainOf(response: Response, f: Hertz): number {
   const { re, im } = transferOf(response, f);
-  return Math.hypot(re, im);
+  return Math.sqrt(re * re + im * im);
 }

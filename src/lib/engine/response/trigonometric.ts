@@ -36,7 +36,8 @@ export function trigonometricSum(name: string, waves: readonly Wave[], window: S
       if (cycles === 0) return kind === 'cos' ? end : 0;
       const rate = cycles * omega;
       // 1 − cos x as 2 sin²(x/2) keeps its digits near 0.
-      return kind === 'sin' ? (2 * sin((rate * end) / 2) ** 2) / rate : sin(rate * end) / rate;
+      const half = sin((rate * end) / 2);
+      return kind === 'sin' ? (2 * half * half) / rate : sin(rate * end) / rate;
     });
   };
   return { name, length: window, value, slope, integral, peak: maximise(value, slope, 0, window) };
