@@ -21,8 +21,9 @@ export function installCommand(packages) {
 export function installPackages(packages) {
   const command = installCommand(packages);
   const byHand = `sudo sh -c '${command}'`;
+  const asRoot = shell(command, byHand);
   console.log(`Installing ${packages.join(' and ')} from Debian ...`);
-  const done = spawnSync(...shell(command, byHand), { stdio: 'inherit' });
+  const done = spawnSync(...asRoot, { stdio: 'inherit' });
   if (done.status !== 0)
     throw new PlainError(`Installing ${packages.join(' and ')} failed. To try by hand: ${byHand}`);
 }
