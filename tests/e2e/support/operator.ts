@@ -15,6 +15,13 @@ export const playerIn = (page: Page, state: string) => page.locator(`.player[dat
 
 /** From the entry to the armed run. */
 export async function armRun(page: Page, choice: RunChoice): Promise<void> {
+  await getReady(page, choice);
+  await page.getByRole('button', { name: 'Arm the run' }).click();
+  await expect(playerIn(page, 'armed')).toBeVisible();
+}
+
+/** From the entry to the screen that offers to arm. */
+export async function getReady(page: Page, choice: RunChoice): Promise<void> {
   await page.getByLabel('Participant code').fill(choice.participant);
   if (choice.run) await page.getByLabel('Run', { exact: true }).selectOption({ label: choice.run });
   await page.getByLabel('Operator code').fill('op1');
@@ -24,8 +31,6 @@ export async function armRun(page: Page, choice: RunChoice): Promise<void> {
   for (const key of choice.keys) await page.keyboard.press(key);
   await page.getByRole('button', { name: 'Go on', exact: true }).click({ timeout: 15_000 });
   await readOn(page);
-  await page.getByRole('button', { name: 'Arm the run' }).click();
-  await expect(playerIn(page, 'armed')).toBeVisible();
 }
 
 /** Past the participant's instructions, however many pages they have. */
