@@ -23,10 +23,10 @@ export function itemWords(item: Item): string {
     case 'picture':
       return item.file || 'no picture chosen yet';
     case 'shape':
-      return item.shape;
+      return item.shape === item.name ? `${item.size}°` : item.shape;
     case 'sound':
       return `${item.frequency} Hz, ${item.ear === 'both' ? 'both ears' : `${item.ear} ear`}`;
     case 'fixation':
-      return 'cross';
+      return `${item.size}°`;
   }
 }

@@ -2,6 +2,7 @@
 export const panel = 'min-w-0 rounded-sheet border border-rule bg-sheet px-4 py-3.5';
 export const heading = 'm-0 mb-3 text-fine font-bold text-soft';
 export const label = 'mb-1 block font-bold';
+export const softLabel = 'mb-0.5 block text-fine text-soft';
 export const input =
   'min-h-9 w-full min-w-0 rounded-sheet border border-rule-strong bg-sheet px-2.5 py-1.5 text-ink disabled:border-rule disabled:text-soft aria-invalid:border-warm';
 export const quiet =
