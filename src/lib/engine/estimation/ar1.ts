@@ -27,7 +27,7 @@ export function fitAr1(columns: readonly Float64Array[], y: Float64Array, rho: n
  * ('REML', which does not blame the columns' flexibility on the noise; better with many columns).
  *
  * ML: −n/2 ln(2π q/n) − (n−1)/2 ln(1−ρ²) − n/2; REML: −(n−p)/2 ln(2π q/(n−p)) − (n−1)/2 ln(1−ρ²) − ½ ln|XᵀV⁻¹X| −
- * (n−p)/2, with q = eᵀV⁻¹e at the GLS fit. The best of 81 values of rho is bracketed, then the derivative's root is
+ * (n−p)/2, with q = eᵀV⁻¹e at the GLS fit. The best of 41 values of rho is bracketed, then the derivative's root is
  * found by bisection: exact to rounding.
  *
  * Domain: at least two volumes more than independent columns. Errors: `EngineError` otherwise, and for malformed data.
@@ -55,7 +55,7 @@ export function estimateAr1(
   };
   let best = 0;
   let bestValue = -Infinity;
-  const grid = Array.from({ length: 81 }, (_, i) => (i - 40) / 40.4);
+  const grid = Array.from({ length: 41 }, (_, i) => (i - 20) / 20.2);
   grid.forEach((rho, i) => {
     const value = valueAt(rho);
     if (value > bestValue) {

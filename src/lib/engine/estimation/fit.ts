@@ -17,7 +17,7 @@ export interface Fit {
   readonly rank: number;
   /** Columns that were dropped because they depend on earlier ones. */
   readonly dropped: number[];
-  /** Volumes − rank. */
+  /** Volumes − rank (one less where the noise model has no mean). */
   readonly df: number;
   /** Sum of squared whitened residuals, eᵀV⁻¹e. */
   readonly squares: number;
@@ -56,8 +56,9 @@ export function fitLeastSquares(columns: readonly Float64Array[], y: Float64Arra
   const fitted = new Float64Array(y.length);
   columns.forEach((column, j) => addScaled(fitted, column, coefficients[j]!));
   const residuals = whitener ? y.map((value, n) => value - fitted[n]!) : whitenedResiduals;
-  const n = y.length;
-  const df = n - rank;
+  // 1/f noise has no finite mean: its whitening takes the mean away, and a degree of freedom with it.
+  const n = y.length - (whitener && isBlindToMean(whitener, y.length) ? 1 : 0);
+  const df = Math.max(0, n - rank);
   const squares = dot(turned, turned);
   const variance = df > 0 ? squares / df : 0;
   const determinant = whitener?.logDeterminant ?? 0;
@@ -76,6 +77,11 @@ export function fitLeastSquares(columns: readonly Float64Array[], y: Float64Arra
     r2: shareExplained(y, residuals),
     qr
   };
+}
+
+function isBlindToMean(whitener: Whitener, volumes: number): boolean {
+  const rest = whitener.apply(new Float64Array(volumes).fill(1));
+  return dot(rest, rest) < 1e-12 * volumes;
 }
 
 function shareExplained(y: Float64Array, residuals: Float64Array): number {
