@@ -10,7 +10,7 @@ import { benchTable } from './table';
 import { isMet, type BenchPart, type BenchRow } from './types';
 
 /** In this order; the player first, while the machine is quiet. */
-const PARTS = ['player', 'engine', 'search'];
+const PARTS = ['player', 'engine', 'search', 'synthetic'];
 
 async function loadPart(name: string): Promise<BenchPart> {
   const module = (await import(pathToFileURL(pathOf(name)).href)) as { default: BenchPart };
