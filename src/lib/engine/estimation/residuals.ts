@@ -4,7 +4,7 @@ import { dot } from '../linalg/vector';
 /**
  * Autocorrelation of residuals at lags 0 … `lags`: r_k = Σ e_t e_{t+k} / Σ e_t². All zeros for residuals of 0.
  * (Residuals of a fit are biased towards negative values by the columns taken out; REML is not.)
- * @example autocorrelation(Float64Array.of(1, -1, 1, -1), 1) // 1, −0.75
+ * @example autocorrelation(Float64Array.of(1, -1, 1, -1), 1) // [1, -0.75]
  */
 export function autocorrelation(residuals: Float64Array, lags: number): Float64Array {
   requireWhole('number of lags', lags, 0, 'Use 1 for neighbouring volumes.');

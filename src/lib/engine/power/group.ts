@@ -54,7 +54,7 @@ export function groupPower(group: Group, rule: TestRule): GroupPower {
 /**
  * Power of the comparison of two groups of `participants` each: Var = 2 (σ_B² + σ_W²)/n, df = 2n − 2; `meanEffect` is
  * the difference of the groups' means.
- * @example n = 20, difference 1, variance 1, two-sided 0.05: power 0.8689528 (R's manual, one tail counted)
+ * @example comparisonPower({ meanEffect: 1, betweenSd: 1, withinVariance: 0, participants: 20 }, { alpha: 0.05, sides: 2 }).power // 0.8689530
  */
 export function comparisonPower(group: Group, rule: TestRule): GroupPower {
   const variance = requireGroup(group);
@@ -95,7 +95,7 @@ function requireMore(subject: string, value: number, than: number): void {
  * The number of participants at which a rising power curve reaches `wanted`, as a fraction (round it up).
  * Null where even `most` are too few.
  * @param powerAt power with n participants, n > 1, rising with n
- * @example participantsFor(0.9, (participants) => comparisonPower({ …, participants }, rule).power) // 22.021…
+ * @example participantsFor(0.9, (n) => comparisonPower({ meanEffect: 1, betweenSd: 1, withinVariance: 0, participants: n }, { alpha: 0.05, sides: 1 }).power) // 17.84712
  */
 export function participantsFor(
   wanted: number,

@@ -1,4 +1,4 @@
-import { regressor } from '../convolution/regressor';
+import { addEvent, requireEvent } from '../convolution/event';
 import { peakScale } from '../convolution/peak-scale';
 import { runInformation } from '../design/information';
 import { readContrast, rowSpaceOf } from '../design/row-space';
@@ -38,8 +38,7 @@ export function scoreEvents(
         `a whole number from 0 to ${width - 1}`,
         'Give the contrasts a weight for every column.'
       );
-    const part = regressor([{ onset, duration }], response, times, peakScale(response, duration));
-    for (let n = 0; n < part.length; n++) target[n]! += part[n]!;
+    addEvent(target, times, response, requireEvent({ onset, duration }), peakScale(response, duration));
   }
   const columns: Column[] = values.map((column, j) => ({ name: `column ${j + 1}`, values: column }));
   const setting = prepareSetting({ tr: rules.tr, times, highPass, noise });

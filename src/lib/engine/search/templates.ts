@@ -77,7 +77,9 @@ function makeTemplate(problem: SearchProblem, part: Part, setting: Setting, posi
     rows.push(z.slice(start, end));
     let lost = 0;
     for (let k = 0; k < q.length; k++) {
-      const share = dot(q[k]!, z);
+      const direction = q[k]!;
+      let share = 0;
+      for (let n = start; n < end; n++) share += direction[n]! * z[n]!;
       nuisance[g * q.length + k] = share;
       lost += share * share;
     }

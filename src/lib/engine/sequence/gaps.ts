@@ -20,7 +20,7 @@ export function truncatedExponentialMean(a: Seconds, b: Seconds, lambda: Seconds
  * The λ that gives the cut exponential this mean. Means above the middle give a negative λ (longer gaps likelier);
  * the exact middle gives Infinity, which is uniform.
  * Domain: a < mean < b. Errors: `EngineError`.
- * @example truncatedExponentialScale(2, 12, 5) // 3.742369511673094
+ * @example truncatedExponentialScale(2, 12, 5) // 3.74236951167337
  */
 export function truncatedExponentialScale(a: Seconds, b: Seconds, mean: Seconds): Seconds {
   requireRange(a, b);
@@ -77,7 +77,10 @@ export function gapLaw(values: readonly Seconds[], weights: readonly number[]): 
 /** Every gap the same. */
 export const fixedGap = (gap: Seconds): GapLaw => gapLaw([gap], [1]);
 
-/** Each grid value from a to b alike. @example uniformGaps(2, 10, 2).variance // 8 */
+/**
+ * Each grid value from a to b alike.
+ * @example uniformGaps(2, 10, 2).variance // 8
+ */
 export function uniformGaps(a: Seconds, b: Seconds, grid: Seconds): GapLaw {
   const values = gridValues(a, b, grid);
   return gapLaw(

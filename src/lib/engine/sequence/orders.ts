@@ -14,7 +14,8 @@ export function randomOrder(counts: readonly number[], random: Random): number[]
 /**
  * Permuted blocks: `blocks` stretches one after the other, each a random order of the same counts, so that the kinds
  * stay balanced all through the run.
- * @example permutedBlocks([1, 1], 3, random) // e.g. [0, 1, 1, 0, 0, 1]
+ * Two kinds once in each of three blocks may give 0 1 1 0 0 1.
+ * @example permutedBlocks([2], 2, seeded('any')) // [0, 0, 0, 0]
  */
 export function permutedBlocks(counts: readonly number[], blocks: number, random: Random): number[] {
   requireWhole('number of blocks', blocks, 1, 'Use at least one block.');

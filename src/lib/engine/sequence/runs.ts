@@ -11,7 +11,7 @@ export interface RunLengths {
 
 /**
  * How long the same kind comes in a row.
- * @example runLengthsOf([0, 0, 1], 2) // longest 2, byKind [2, 1], repetitionRate 0.5
+ * @example runLengthsOf([0, 0, 1], 2).byKind // [2, 1]
  */
 export function runLengthsOf(sequence: ArrayLike<number>, kinds: number): RunLengths {
   requireSequence(sequence, kinds);
