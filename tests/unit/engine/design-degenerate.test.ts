@@ -3,8 +3,9 @@ import { regressor } from '$lib/engine/convolution/regressor';
 import { volumeTimes } from '$lib/engine/convolution/times';
 import { designReport, type DesignInput, type DesignReport } from '$lib/engine/design/report';
 import { EngineError } from '$lib/engine/errors';
-import { constant, dctDrift } from '$lib/engine/noise/drift';
+import { constant, dctDrift, dctDriftAt } from '$lib/engine/noise/drift';
 import { doubleGamma } from '$lib/engine/response/double-gamma';
+import { denseInformation } from './dense';
 import { expectNear } from './near';
 
 const tr = 2;
@@ -110,6 +111,28 @@ describe('degenerate designs give 0 with a reason, never NaN and never an except
     const long: DesignReport = report({ A: a }, { A: [1] }, { highPass: 10_000 });
     const none = report({ A: a }, { A: [1] }, { highPass: null });
     expect(long.contrasts[0]!.efficiency).toBe(none.contrasts[0]!.efficiency);
+  });
+});
+
+describe('volume times', () => {
+  const contrasts = { A: [1, 0], 'A-B': [1, -1] };
+  it('that are even say the same as a number of volumes', () => {
+    const counted = report({ A: a, B: b }, contrasts);
+    const listed = report({ A: a, B: b }, contrasts, { volumes: undefined, times });
+    expect(listed).toEqual(counted);
+  });
+
+  it('of a clustered acquisition carry the noise over the silent gap', () => {
+    // Three volumes a second apart, then five seconds of silence.
+    const clustered = Float64Array.from({ length: volumes }, (_, n) => 8 * Math.floor(n / 3) + (n % 3));
+    const more = { volumes: undefined, times: clustered, tr: 8 / 3 };
+    const events = [10, 90, 170, 250].map((onset) => ({ onset, duration: 16 }));
+    const values = regressor(events, h, clustered);
+    const uneven = report({ A: values }, { A: [1] }, more);
+    expect(uneven.contrasts[0]!.estimable).toBe(true);
+    const v = Array.from(clustered, (s) => Array.from(clustered, (t) => 0.3 ** (Math.abs(s - t) / 2)));
+    const nuisance = [constant(volumes), ...dctDriftAt(clustered, 128)];
+    expectNear(uneven.information[0]![0]!, denseInformation([values], nuisance, v)[0]![0]!);
   });
 });
 

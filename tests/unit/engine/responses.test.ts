@@ -6,6 +6,7 @@ import {
   sinesAndCosines,
   threeGammas
 } from '$lib/engine/response/bases';
+import { RESPONSES } from '$lib/engine/response/catalogue';
 import { certifiedIntegral } from '$lib/engine/response/certified-integral';
 import {
   dispersionDerivative,
@@ -206,6 +207,27 @@ describe('a response of one’s own', () => {
   it('refuses too few samples and gaps', () => {
     expect(() => sampledResponse('own', [1], 1)).toThrow(/number of samples is 1; expected at least 2/);
     expect(() => sampledResponse('own', [1, NaN], 1)).toThrow(EngineError);
+  });
+});
+
+describe('catalogue', () => {
+  it('offers every kind with a name, a source and as many columns as it says', () => {
+    const counts = Object.fromEntries(RESPONSES.map((kind) => [kind.id, kind.make(2).length]));
+    expect(counts).toEqual({
+      'double-gamma': 1,
+      'double-gamma-derivatives': 3,
+      'glover-auditory': 1,
+      'glover-motor': 1,
+      boynton: 1,
+      'gamma-variate': 1,
+      fir: 12,
+      waves: 7,
+      'three-gammas': 3
+    });
+    for (const kind of RESPONSES) {
+      expect(kind.source).not.toBe('');
+      for (const response of kind.make(0.735)) expect(Number.isFinite(response.peak.value)).toBe(true);
+    }
   });
 });
 

@@ -112,17 +112,21 @@ function isEven(times: ArrayLike<Seconds>, tr: Seconds): boolean {
 }
 
 const recent = new Map<string, Setting>();
+/** Runs of a long task differ in length; each length is one setting. */
+const REMEMBERED = 16;
 
-/** `prepareSetting`, remembering the last few evenly sampled settings: during a drag only the regressors change. */
+/** `prepareSetting`, remembering the last evenly sampled settings: during a drag only the regressors change. */
 export function settingFor(input: SettingInput): Setting {
-  if (input.times !== undefined || (input.extra?.length ?? 0) > 0) return prepareSetting(input);
+  if ((input.extra?.length ?? 0) > 0) return prepareSetting(input);
   // NaN would be written as null below and pass for "no high-pass".
   if (input.highPass !== null && !Number.isFinite(input.highPass)) return prepareSetting(input);
-  const key = JSON.stringify([input.tr, input.volumes, input.highPass, input.noise]);
+  const base = timeBase(input);
+  if (base.times !== null) return prepareSetting(input);
+  const key = JSON.stringify([base.tr, base.volumes, input.highPass, input.noise]);
   const known = recent.get(key);
-  if (known) return known;
-  const made = prepareSetting(input);
-  if (recent.size >= 8) recent.delete(recent.keys().next().value!);
-  recent.set(key, made);
-  return made;
+  const setting = known ?? prepareSetting(input);
+  recent.delete(key);
+  recent.set(key, setting);
+  if (recent.size > REMEMBERED) recent.delete(recent.keys().next().value!);
+  return setting;
 }
