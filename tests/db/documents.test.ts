@@ -246,6 +246,23 @@ describe('bad documents', () => {
     expect((await get()).saveNumber).toBe(saveNumber);
   });
 
+  it.each([
+    ['NUL', 'Chime\0Lantern'],
+    ['half a surrogate pair', 'Lantern \ud83c']
+  ])('text with %s is refused wherever it comes', async (_, text) => {
+    const { saveNumber, document } = await get();
+    const inTitle = await put(retitled(document, text), saveNumber);
+    const inWords = await put(document, saveNumber, [text]);
+    const params = { study: w.study.id };
+    const body = { label: 'broken', name: text };
+    const inForm = await call(t.db, w.people.owner, 'POST', '/studies/{study}/tasks', params, { body });
+    for (const answer of [inTitle, inWords, inForm]) {
+      expect(answer.status).toBe(422);
+      expect(answer.json.error.message).toMatch(/no text/);
+    }
+    expect((await get()).saveNumber).toBe(saveNumber);
+  });
+
   it.each([0, -1, '2', null, 61])('a task with a TR of %s s is refused', async (tr) => {
     const body = { label: 'x', name: 'x', tr, volumes: 100 };
     const answer = await call(

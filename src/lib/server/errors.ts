@@ -29,8 +29,31 @@ export function refuse(status: RefusalStatus, message: string, more: Partial<App
   error(status, { code: CODES[status], message, ...more });
 }
 
+/** NUL and halves of surrogate pairs: JSON can hold them, but they are no text and the database refuses them. */
+const NO_TEXT = /\0|\p{Surrogate}/u;
+
+/** Dotted path of the first text that holds such a character, or null. */
+function brokenText(value: unknown, path = ''): string | null {
+  if (typeof value === 'string') return NO_TEXT.test(value) ? path : null;
+  if (typeof value !== 'object' || value === null) return null;
+  for (const [key, inner] of Object.entries(value)) {
+    const at = path ? `${path}.${key}` : key;
+    const found = NO_TEXT.test(key) ? path || 'a name' : brokenText(inner, at);
+    if (found !== null) return found;
+  }
+  return null;
+}
+
+export function refuseBrokenText(value: unknown): void {
+  const path = brokenText(value);
+  if (path === null) return;
+  const message = 'holds a character that is no text (NUL, or half of a surrogate pair); take it out';
+  refuse(422, `${path ? `The field ‘${path}’` : 'The text'} ${message}.`, { details: [{ path, message }] });
+}
+
 /** What came from outside, parsed; 422 with every field that breaks a rule. */
 export function accept<T>(schema: z.ZodType<T>, value: unknown): T {
+  refuseBrokenText(value);
   const parsed = schema.safeParse(value);
   if (parsed.success) return parsed.data;
   const details = parsed.error.issues.map((i) => ({

@@ -8,7 +8,7 @@ import { assets } from '../db/repositories/assets';
 import { saves } from '../db/repositories/saves';
 import { tasks } from '../db/repositories/tasks';
 import type { Task } from '../db/rows';
-import { accept, isTaken, notFound, refuse, type Detail } from '../errors';
+import { accept, isTaken, notFound, refuse, refuseBrokenText, type Detail } from '../errors';
 
 export const wordsSchema = z.array(z.string().max(500)).max(500);
 
@@ -34,6 +34,7 @@ export async function currentDocument(db: Knex, labId: string, taskId: string) {
 
 /** A document from outside, or 422 with every problem's path. */
 export function acceptDocument(value: unknown): TaskDocument {
+  refuseBrokenText(value);
   const reading = readDocument(value);
   if (reading.ok) return reading.document;
   const { problems } = reading;
