@@ -14,7 +14,7 @@ export const actions: Actions = {
       const owner = accounts.find((one) => one.role === 'owner');
       if (owner) await startSession(event, owner.user);
       return {
-        lab: lab.id,
+        lab,
         accounts: accounts.map(({ role, email, password }) => ({ role, email, password }))
       };
     });
