@@ -2,8 +2,11 @@
  * The engine beside a plain rebuild of the same numbers: convolve on a fine grid, whiten with a dense matrix, invert.
  * Both are checked to agree before anything is timed.
  */
+import { join } from 'node:path';
 import { setFlagsFromString } from 'node:v8';
 import { runInNewContext } from 'node:vm';
+import { chromium } from 'playwright';
+import { bundleModule } from '../../../scripts/vite-plugin-bundle';
 import { curveTimes } from '../../../src/lib/engine/convolution/curve';
 import type { DesignEvent } from '../../../src/lib/engine/convolution/event';
 import { IncrementalRegressor } from '../../../src/lib/engine/convolution/incremental';
@@ -13,6 +16,7 @@ import { designReport } from '../../../src/lib/engine/design/report';
 import { seeded } from '../../../src/lib/engine/random';
 import { doubleGamma } from '../../../src/lib/engine/response/double-gamma';
 import type { BenchPart, BenchRow } from '../types';
+import { designBits, type PageFigures } from './engine-page';
 import { convolveOnGrid, GRID, rebuildPlainly, type PlainDesign } from './engine-plain';
 
 const h = doubleGamma();
@@ -67,6 +71,37 @@ function kilobytes(call: () => void): number {
   return Math.max(...samples);
 }
 
+/** The preview measured in a page, and how many bits of a design come out differently there. */
+async function inChromium(): Promise<PageFigures & { differing: number }> {
+  const root = join(import.meta.dirname, '../../..');
+  const { code } = await bundleModule(join(import.meta.dirname, 'engine-page.ts'), 'iife', root);
+  const browser = await chromium.launch({
+    executablePath: process.env.CHROMIUM || '/usr/bin/chromium',
+    args: ['--no-sandbox', '--disable-gpu', '--no-first-run', '--disable-background-networking']
+  });
+  try {
+    const page = await browser.newPage();
+    await page.setContent('<svg width="1200" height="60"><path fill="none" stroke="black"/></svg>');
+    await page.addScriptTag({ content: code });
+    await page.evaluate('measure(document.querySelector("path"), 100)');
+    const figures = await page.evaluate<PageFigures>('measure(document.querySelector("path"), 1000)');
+    const theirs = await page.evaluate<string>('designBits()');
+    return { ...figures, differing: bitsApart(designBits(), theirs) };
+  } finally {
+    await browser.close();
+  }
+}
+
+function bitsApart(a: string, b: string): number {
+  if (a.length !== b.length) return Infinity;
+  let apart = 0;
+  for (let i = 0; i < a.length; i += 1) {
+    const change = parseInt(a[i]!, 16) ^ parseInt(b[i]!, 16);
+    apart += change.toString(2).replaceAll('0', '').length;
+  }
+  return apart;
+}
+
 export async function engineBench(): Promise<BenchRow[]> {
   const rows: BenchRow[] = [];
   const row = (name: string, value: number, unit: string, more: Partial<BenchRow> = {}) =>
@@ -116,6 +151,21 @@ export async function engineBench(): Promise<BenchRow[]> {
     against: { name: 'convolution on the grid', value: rebuildUs }
   });
   row('… times faster than that convolution', rebuildUs / moveUs, '×', { aim: 20, better: 'higher' });
+
+  const page = await inChromium();
+  const sorted = [...page.previews].sort((a, b) => a - b);
+  const at = (share: number) => sorted[Math.floor(share * (sorted.length - 1))]!;
+  const rebuild = page.rebuilds.sort((a, b) => a - b)[Math.floor(page.rebuilds.length / 2)]!;
+  row('Chromium: preview of one move, 200 trials, 600 s, median', at(0.5), 'ms', {
+    aim: 4,
+    against: { name: 'convolution on a 0.1 s grid', value: rebuild }
+  });
+  row('Chromium: … 99th percentile', at(0.99), 'ms', { aim: 16 });
+  row('Chromium: … times faster than that convolution', rebuild / at(0.5), '×', {
+    aim: 20,
+    better: 'higher'
+  });
+  row('bits of a design that differ between Node and Chromium', page.differing, 'bits', { aim: 0 });
   return rows;
 }
 
