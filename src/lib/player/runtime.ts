@@ -7,27 +7,17 @@
  */
 import type { Profile } from '../task/profile';
 import { roundMicro } from './clock';
-import { FrameMeter, isDue } from './frames';
+import { FrameMeter } from './frames';
 import type { RunLog } from './log';
-import type { FocusLine, ItemLine, PulseLine as PulseEntry, Timing } from './log-lines';
+import type { FocusLine, PulseLine as PulseEntry, Timing } from './log-lines';
+import { Presenter, SOUND_AHEAD, type Frame, type Stage } from './presenter';
 import { pulsePlan, PulseReader, type PulseNews } from './pulses';
 import { ResponseReader, type Answer } from './responses';
-import type { Schedule, ScheduledItem } from './schedule';
+import type { Schedule } from './schedule';
 
 export type RunState = 'ready' | 'armed' | 'running' | 'complete' | 'partial';
 
-/** The screen and loudspeaker that a runtime plays on. */
-export interface Stage {
-  /** Draws exactly these items, in this order, in the present frame. Called only when they change. */
-  draw(items: readonly ScheduledItem[]): void;
-  /**
-   * Has a sound begin at page time `at`, seconds. Answers the page time at which it will be heard by estimate, or
-   * null where it cannot be played.
-   */
-  sound(item: ScheduledItem, at: number): number | null;
-  /** Silences what has been started or planned. */
-  silence(): void;
-}
+export type { Stage } from './presenter';
 
 export interface RuntimeOptions {
   schedule: Schedule;
@@ -44,8 +34,6 @@ export interface RuntimeOptions {
   onAnswer?: (answer: Answer) => void;
 }
 
-/** Sounds are handed to the audio clock this long before they are due, seconds. */
-const SOUND_AHEAD = 0.3;
 /** Windows are closed this long after their end, seconds, since a key may be reported after its frame. */
 const INPUT_LAG = 0.1;
 /** A pause between frames that only a stopped computer makes, seconds. */
@@ -57,26 +45,21 @@ export class Runtime {
   readonly #o: RuntimeOptions;
   #state: RunState = 'ready';
   #responses: ResponseReader;
+  readonly #presenter: Presenter;
   /** Page time of time zero while running, seconds. */
-  #zero = 0;
+  #zero = NaN;
   /** Added to planned times in pulse-locked mode, seconds. */
   #shift = 0;
   #shiftedTrial = 0;
-  #next = 0;
-  #nextSound = 0;
-  #active: ScheduledItem[] = [];
-  #sounding: { sound: ScheduledItem; from: number; to: number; begun: boolean }[] = [];
   #lastFrame = NaN;
-  readonly #visible: ScheduledItem[];
-  readonly #sounds: ScheduledItem[];
 
   constructor(options: RuntimeOptions) {
     this.#o = options;
     const { schedule, profile } = options;
     this.pulses = new PulseReader(pulsePlan(profile, schedule.tr, schedule.volumes));
     this.frames = new FrameMeter(options.frameInterval ?? 1 / profile.screen.refreshRate);
-    this.#visible = schedule.items.filter((i) => i.item.kind !== 'sound');
-    this.#sounds = schedule.items.filter((i) => i.item.kind === 'sound');
+    const { stage, log } = options;
+    this.#presenter = new Presenter(schedule.items, stage, log, profile.displayDelay.seconds);
     this.#responses = new ResponseReader(schedule.windows, schedule.responses);
   }
 
@@ -89,7 +72,8 @@ export class Runtime {
   }
   /** Seconds from time zero at page time `now`; null before zero. */
   elapsed(now: number): number | null {
-    return this.#state === 'running' || this.isOver ? now - this.#zero : null;
+    const passed = now - this.#zero;
+    return Number.isNaN(passed) ? null : passed;
   }
 
   /** From now on pulses count. */
@@ -159,11 +143,8 @@ export class Runtime {
     this.#lastFrame = page;
     this.tick(page);
     if (this.#state !== 'running') return;
-    const shown = page + this.#o.profile.displayDelay.seconds;
     this.#follow(page);
-    this.#planSounds(page);
-    this.#logSounds(page);
-    if (this.#change(page, shown)) this.#o.stage.draw(this.#active);
+    this.#presenter.frame(this.#frameAt(page));
     this.#answers(this.#responses.advance(this.#planned(page) - INPUT_LAG), page);
     if (page >= this.#zero + this.#shift + this.#o.schedule.end)
       this.#end('complete', 'the run is over', page);
@@ -181,6 +162,9 @@ export class Runtime {
     this.#end('partial', reason, page);
   }
 
+  #frameAt(page: number): Frame {
+    return { page, origin: this.#zero + this.#shift, zero: this.#zero, interval: this.frames.interval };
+  }
   /** Page time → planned time, seconds from zero. */
   #planned(page: number): number {
     return page - this.#zero - this.#shift;
@@ -296,11 +280,9 @@ export class Runtime {
   /** One pulse and no second: it was none of the run's. Everything is as before it, and still armed. */
   #falseStart(page: number): void {
     this.#note(page, 'false-start', 'One pulse without a second: armed again.');
-    this.#o.stage.silence();
-    this.#active = [];
-    this.#sounding = [];
-    this.#o.stage.draw(this.#active);
-    this.#next = this.#nextSound = this.#shift = this.#shiftedTrial = 0;
+    this.#presenter.reset();
+    this.#zero = NaN;
+    this.#shift = this.#shiftedTrial = 0;
     this.#responses = new ResponseReader(this.#o.schedule.windows, this.#o.schedule.responses);
     this.#become('armed', 'false start');
   }
@@ -309,106 +291,13 @@ export class Runtime {
   #follow(page: number): void {
     if (this.#o.timing !== 'pulse-locked' || this.pulses.line.count < 4 || this.pulses.agrees === false)
       return;
-    const coming = this.#visible[this.#next] ?? this.#sounds[this.#nextSound];
+    const { coming } = this.#presenter;
     if (!coming || coming.trial === this.#shiftedTrial) return;
     if (this.#zero + this.#shift + coming.onset > page + SOUND_AHEAD) return;
     this.#shiftedTrial = coming.trial;
     const wanted = this.pulses.line.timeAt(coming.onset / this.#o.schedule.tr) - this.#zero - coming.onset;
     const most = this.frames.interval;
     this.#shift += Math.min(most, Math.max(-most, wanted - this.#shift));
-  }
-
-  #planSounds(page: number): void {
-    while (this.#nextSound < this.#sounds.length) {
-      const sound = this.#sounds[this.#nextSound]!;
-      const at = this.#zero + this.#shift + sound.onset;
-      if (at > page + SOUND_AHEAD) return;
-      this.#nextSound += 1;
-      if (sound.end < this.#planned(page)) {
-        this.#notShown(sound, page, this.#whyMissed(sound));
-        continue;
-      }
-      const heard = this.#o.stage.sound(sound, at);
-      if (heard === null) this.#notShown(sound, page, 'the computer plays no sound');
-      else this.#sounding.push({ sound, from: heard, to: heard + sound.end - sound.onset, begun: false });
-    }
-  }
-
-  /** Logs the begin and end of sounds once they have happened: what was only planned may still be stopped. */
-  #logSounds(page: number): void {
-    for (let i = 0; i < this.#sounding.length; i++) {
-      const s = this.#sounding[i]!;
-      if (!s.begun && s.from <= page) {
-        s.begun = true;
-        this.#item(s.sound, 'on', s.from, null, s.from);
-      }
-      if (s.to > page) continue;
-      this.#item(s.sound, 'off', s.to, null, s.to);
-      this.#sounding.splice(i--, 1);
-    }
-  }
-
-  /** Takes off and puts on what is due in the frame at `page`, seen at `shown`. Answers whether anything changed. */
-  #change(page: number, shown: number): boolean {
-    const interval = this.frames.interval;
-    const plan = this.#zero + this.#shift;
-    let changed = false;
-    for (let i = this.#active.length - 1; i >= 0; i--) {
-      const item = this.#active[i]!;
-      if (!isDue(plan + item.end, shown, interval)) continue;
-      this.#active.splice(i, 1);
-      this.#item(item, 'off', page, page, shown);
-      changed = true;
-    }
-    while (this.#next < this.#visible.length) {
-      const item = this.#visible[this.#next]!;
-      if (!isDue(plan + item.onset, shown, interval)) break;
-      this.#next += 1;
-      // Whatever lay wholly between the frames that there were has been missed, and is said to be.
-      if (plan + item.end <= shown - interval / 2) {
-        this.#notShown(item, page, this.#whyMissed(item));
-        continue;
-      }
-      this.#insert(item);
-      this.#item(item, 'on', page, page, shown);
-      changed = true;
-    }
-    return changed;
-  }
-  #whyMissed(item: ScheduledItem): string {
-    return item.end <= 0 ? 'over before time zero' : 'no frame while it was due';
-  }
-  #insert(item: ScheduledItem): void {
-    let at = this.#active.length;
-    while (at > 0 && this.#active[at - 1]!.layer > item.layer) at -= 1;
-    this.#active.splice(at, 0, item);
-  }
-
-  #item(
-    s: ScheduledItem,
-    state: ItemLine['state'],
-    page: number,
-    frame: number | null,
-    shown: number | null,
-    reason?: string
-  ): void {
-    this.#o.log.add({
-      type: 'item',
-      page,
-      state,
-      trial: s.trial,
-      trialId: s.trialId,
-      itemId: s.item.id,
-      item: s.item.name,
-      kind: s.item.kind,
-      planned: state === 'off' ? s.end : s.onset,
-      frame: frame === null ? null : roundMicro(frame - this.#zero),
-      shown: shown === null ? null : roundMicro(shown),
-      ...(reason === undefined ? {} : { reason })
-    });
-  }
-  #notShown(item: ScheduledItem, page: number, reason: string): void {
-    this.#item(item, 'not-shown', page, null, null, reason);
   }
 
   #answers(answers: readonly Answer[], page: number): void {
@@ -430,19 +319,11 @@ export class Runtime {
   }
 
   #end(state: 'complete' | 'partial', reason: string, page: number): void {
-    const began = this.#state === 'running';
-    this.#o.stage.silence();
-    if (began) {
+    if (this.#state === 'running') {
       this.#answers(this.#responses.advance(this.#planned(page)), page);
       const open = this.#responses.finish();
       // A window that an abort cut short was not missed by the participant.
       this.#answers(state === 'complete' ? open : open.filter((a) => a.presses > 0), page);
-      const shown = page + this.#o.profile.displayDelay.seconds;
-      for (const item of this.#active) this.#item(item, 'off', page, page, shown);
-      this.#logSounds(page);
-      for (const { sound, begun } of this.#sounding)
-        if (begun) this.#item(sound, 'off', page, null, page);
-        else this.#notShown(sound, page, reason);
       const { mode } = this.#o.profile.pulses;
       const lacking = this.pulses.plan.volumes * this.pulses.plan.perVolume - this.pulses.found;
       if (state === 'complete' && this.pulses.found > 0 && mode !== 'once' && lacking > 0)
@@ -450,13 +331,7 @@ export class Runtime {
           lacking
         });
     }
-    for (const item of this.#visible.slice(this.#next)) this.#notShown(item, page, reason);
-    for (const item of this.#sounds.slice(this.#nextSound)) this.#notShown(item, page, reason);
-    this.#active = [];
-    this.#sounding = [];
-    this.#next = this.#visible.length;
-    this.#nextSound = this.#sounds.length;
-    this.#o.stage.draw(this.#active);
+    this.#presenter.end(this.#frameAt(page), reason);
     this.#become(state, reason);
   }
 }
