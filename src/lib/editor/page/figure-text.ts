@@ -5,8 +5,14 @@ export function efficiencyText(value: number): string {
   if (value === 0) return '0';
   if (!Number.isFinite(value)) return '∞';
   if (value >= 1000) return Math.round(value).toLocaleString('en');
-  return value.toPrecision(3).replace(/e-0*(\d+)$/, ' · 10⁻$1');
+  return value
+    .toPrecision(3)
+    .replace(
+      /e-(\d+)$/,
+      (_, power: string) => ` · 10⁻${power.replace(/\d/g, (d) => SUPERSCRIPTS[Number(d)] ?? d)}`
+    );
 }
+const SUPERSCRIPTS = '⁰¹²³⁴⁵⁶⁷⁸⁹';
 
 /** Two decimals; ∞ where a column is the sum of others. */
 export const inflationText = (value: number): string =>

@@ -37,7 +37,7 @@ export interface LineModel {
 }
 
 /** A grip is never wider than its blank, nor too thin to be seen. */
-const GRIP = { least: 7, most: 22 };
+const GRIP = { least: 7, most: 24 };
 
 export function lineModels(g: PageGeometry, trials: readonly CompiledTrial[]): Map<number, LineModel> {
   const lines = new Map<number, LineModel>();

@@ -2,8 +2,8 @@
 export const LINE = {
   height: 97,
   /** Top and height of the blocks; they stand on the base line. */
-  blockTop: 24,
-  blockHeight: 22,
+  blockTop: 22,
+  blockHeight: 24,
   base: 46,
   /** The band of the predicted signal. */
   bandBottom: 94,
