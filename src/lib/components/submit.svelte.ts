@@ -18,8 +18,10 @@ export class Submit {
       await update({ reset: result.type === 'success' });
       this.busy = false;
       await tick();
-      if (result.type === 'failure')
-        formElement.querySelector<HTMLElement>('[aria-invalid="true"], [data-form-message]')?.focus();
+      if (result.type === 'failure') {
+        const first = (selector: string) => formElement.querySelector<HTMLElement>(selector);
+        (first('[aria-invalid="true"]') ?? first('[data-form-message]'))?.focus();
+      }
       if (result.type === 'success') this.#after?.();
     };
   };
