@@ -1,6 +1,6 @@
 /** Named response → finger (plan, else document) → key (profile). Cards name responses only. */
-import type { Profile } from '../task/profile';
-import type { Finger, TaskDocument } from '../task/schema';
+import type { Profile } from '$lib/task/profile';
+import type { Finger, TaskDocument } from '$lib/task/schema';
 import type { PlanRow } from './payload';
 
 export interface MappedResponse {

@@ -1,8 +1,8 @@
 /** The log's first line: what was run, with what, where and by whom. */
-import { hashOf } from '../task/canonical';
-import type { Profile } from '../task/profile';
-import type { Run, TaskDocument } from '../task/schema';
-import { toSeconds } from '../task/time';
+import { hashOf } from '$lib/task/canonical';
+import type { Profile } from '$lib/task/profile';
+import type { Run, TaskDocument } from '$lib/task/schema';
+import { toSeconds } from '$lib/task/time';
 import type { CheckItem } from './self-check';
 import { mapResponses } from './fingers';
 import { LOG_FORMAT, type LogHeader, type ScreenFacts, type Timing } from './log-lines';

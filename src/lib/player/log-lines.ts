@@ -1,5 +1,5 @@
 /** The lines of a run's log, one JSON object each. `time` is seconds from time zero, `page` the page clock's seconds. */
-import type { Profile } from '../task/profile';
+import type { Profile } from '$lib/task/profile';
 import type { BundleKind } from './payload';
 import type { CheckItem } from './self-check';
 import type { Place, Verdict } from './responses';

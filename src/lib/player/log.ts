@@ -3,7 +3,7 @@
  * writing, so pulses and keys before zero come out negative, and a log put together again after a crash takes the
  * same way as one that ended well.
  */
-import { sha256Hex } from '../task/canonical';
+import { sha256Hex } from '$lib/task/canonical';
 import { roundMicro } from './clock';
 import type { EndState, LogEnd, LogEntry, LogHeader, NewEntry } from './log-lines';
 

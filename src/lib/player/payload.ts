@@ -3,8 +3,8 @@
  * Pack writes it, the player checks it on reading; nothing else reaches the runtime.
  */
 import { z } from 'zod';
-import { profileSchema } from '../task/profile';
-import { documentSchema, fingerSchema } from '../task/schema';
+import { profileSchema } from '$lib/task/profile';
+import { documentSchema, fingerSchema } from '$lib/task/schema';
 
 export const PAYLOAD_FORMAT = 1;
 export const BUNDLE_KINDS = ['PROOF', 'PRACTICE', 'COLLECTION'] as const;

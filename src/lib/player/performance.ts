@@ -2,8 +2,8 @@
  * Log entries → what was performed, in scanner time, as the writer of event tables takes it. The same way is gone
  * after a run that ended well, after a crash and in Returns.
  */
-import { performedEvents, type EventRow, type PerformedItem, type PerformedResponse } from '../task/events';
-import type { Run, TaskDocument } from '../task/schema';
+import { performedEvents, type EventRow, type PerformedItem, type PerformedResponse } from '$lib/task/events';
+import type { Run, TaskDocument } from '$lib/task/schema';
 import { roundMicro } from './clock';
 import { standing, zeroOf } from './log';
 import type { LogEntry, LogHeader } from './log-lines';

@@ -4,7 +4,7 @@
  * Nothing here waits or schedules: `edge` takes what came in, `tick` says how late it has become, and both answer
  * with news. Times are page seconds. Rules: `player.md`, 'Time and pulses', as kept in this room's README.
  */
-import type { Profile } from '../task/profile';
+import type { Profile } from '$lib/task/profile';
 import { PulseLine } from './pulse-line';
 
 export interface PulsePlan {

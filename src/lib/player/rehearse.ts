@@ -3,9 +3,9 @@
  * `rehearse` runs it on a virtual clock, as fast as possible; `render/rehearsal-host.ts` drives the same
  * `Rehearsal` by the screen's frames.
  */
-import type { EventRow } from '../task/events';
-import type { Profile } from '../task/profile';
-import type { Run, TaskDocument } from '../task/schema';
+import type { EventRow } from '$lib/task/events';
+import type { Profile } from '$lib/task/profile';
+import type { Run, TaskDocument } from '$lib/task/schema';
 import { VirtualClock } from './clock';
 import { makeHeader } from './header';
 import { RunLog, writeLog } from './log';

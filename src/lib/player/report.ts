@@ -1,5 +1,5 @@
 /** What a rehearsal (or a run) was like: onset errors, dropped frames, pulses, answers. */
-import type { EventRow } from '../task/events';
+import type { EventRow } from '$lib/task/events';
 import { standing, zeroOf } from './log';
 import type { LogEntry, LogHeader } from './log-lines';
 import { scannerClock } from './performance';

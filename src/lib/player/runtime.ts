@@ -5,7 +5,7 @@
  * told what to draw and which sound to start when; every event goes into the log. The same code runs behind the
  * bundle's canvas, in the rehearsal and, on a virtual clock, in tests.
  */
-import type { Profile } from '../task/profile';
+import type { Profile } from '$lib/task/profile';
 import { roundMicro } from './clock';
 import { FrameMeter } from './frames';
 import type { RunLog } from './log';

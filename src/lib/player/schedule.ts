@@ -2,10 +2,10 @@
  * Document + run + profile + plan → what happens when, in absolute seconds from time zero.
  * Each time is divided from its own whole µs; nothing is summed on the way.
  */
-import { compileRun, itemDuration, runLength } from '../task/compile';
-import type { Profile } from '../task/profile';
-import type { Item, ResponseWindow, Run, TaskDocument } from '../task/schema';
-import { toSeconds } from '../task/time';
+import { compileRun, itemDuration, runLength } from '$lib/task/compile';
+import type { Profile } from '$lib/task/profile';
+import type { Item, ResponseWindow, Run, TaskDocument } from '$lib/task/schema';
+import { toSeconds } from '$lib/task/time';
 import { mapResponses, type MappedResponse } from './fingers';
 import type { PlanRow } from './payload';
 

@@ -1,6 +1,6 @@
 /** A scanner and a participant made of seeded random numbers, for rehearsals and tests. */
-import { exp, log } from '../engine/elementary';
-import { seeded, type Random } from '../engine/random';
+import { exp, log } from '$lib/engine/elementary';
+import { seeded, type Random } from '$lib/engine/random';
 import type { PulsePlan } from './pulses';
 import type { Schedule } from './schedule';
 

@@ -3,7 +3,7 @@
  * Compiled to one classic script by `?bundle=iife`; it asks for nothing from anywhere.
  */
 import { config } from 'zod';
-import { sha256Hex } from '../task/canonical';
+import { sha256Hex } from '$lib/task/canonical';
 import { readPayload } from './payload';
 import { runAttempt } from './render/attempt';
 import { h } from './render/dom';

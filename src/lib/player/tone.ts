@@ -1,6 +1,6 @@
 /** Samples of a sound item: a sine with raised-cosine ends, at its level in dB full scale but never above a cap. */
-import type { Item } from '../task/schema';
-import { toSeconds } from '../task/time';
+import type { Item } from '$lib/task/schema';
+import { toSeconds } from '$lib/task/time';
 
 /** No sound begins without a ramp, seconds. */
 const SHORTEST_RAMP = 0.002;

@@ -1,5 +1,5 @@
 /** Files of the bundle → pictures ready to draw. Each file is hashed before it is used. */
-import { sha256Hex } from '../../task/canonical';
+import { sha256Hex } from '$lib/task/canonical';
 import type { PayloadAsset } from '../payload';
 
 export function bytesOf(base64: string): Uint8Array<ArrayBuffer> {

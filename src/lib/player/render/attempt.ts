@@ -1,5 +1,5 @@
 /** One attempt with a real screen and keyboard: ready → armed → running → over. Gives back what was kept of it. */
-import type { Profile } from '../../task/profile';
+import type { Profile } from '$lib/task/profile';
 import { makeHeader } from '../header';
 import { RunLog } from '../log';
 import type { LogEnding } from '../log';

@@ -2,8 +2,8 @@
  * Draws the items that are on. A frame without a change costs nothing; nothing is decoded or laid out here, pictures
  * come in ready to draw and the height of capitals is measured once.
  */
-import type { Profile } from '../../task/profile';
-import type { Item } from '../../task/schema';
+import type { Profile } from '$lib/task/profile';
+import type { Item } from '$lib/task/schema';
 import type { ScheduledItem } from '../schedule';
 import { screenGeometry, type Geometry } from './geometry';
 import { traceShape } from './shapes';

@@ -1,6 +1,6 @@
 /** The files of one attempt, from what was kept of it: log, event table, sidecar. */
-import { eventsTsv } from '../../task/events';
-import { eventsSidecar, sidecarText } from '../../task/sidecar';
+import { eventsTsv } from '$lib/task/events';
+import { eventsSidecar, sidecarText } from '$lib/task/sidecar';
 import { fileStem, writeLog, type LogEnding } from '../log';
 import type { LogEntry, LogHeader } from '../log-lines';
 import type { PlayerPayload } from '../payload';

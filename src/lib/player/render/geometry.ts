@@ -2,7 +2,7 @@
  * Degrees of visual angle → pixels of a flat screen seen straight on. The screen's visible width fills the canvas.
  * Positions are exact (tangent), sizes are those at the screen's centre.
  */
-import type { Profile } from '../../task/profile';
+import type { Profile } from '$lib/task/profile';
 
 const RADIANS = Math.PI / 180;
 

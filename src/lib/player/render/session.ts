@@ -1,6 +1,6 @@
 /** What every screen of one sitting shares: the payload, the page's parts and where runs are kept. */
-import type { Profile } from '../../task/profile';
-import type { Run } from '../../task/schema';
+import type { Profile } from '$lib/task/profile';
+import type { Run } from '$lib/task/schema';
 import type { OverrideLine, Timing } from '../log-lines';
 import type { PlanRow, PlayerPayload } from '../payload';
 import { h } from './dom';

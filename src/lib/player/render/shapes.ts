@@ -1,5 +1,5 @@
 /** Outlines of the shapes in a box of side 1 about the origin, y down, for any canvas-like path. */
-import type { SHAPES } from '../../task/schema';
+import type { SHAPES } from '$lib/task/schema';
 
 export type ShapeName = (typeof SHAPES)[number];
 type Path = Pick<CanvasRenderingContext2D, 'moveTo' | 'lineTo' | 'arc' | 'closePath'>;

@@ -3,8 +3,8 @@
  * to audio time through `getOutputTimestamp()`, which tells what is leaving the computer now, so that the output's
  * latency is in it. The profile's measured sound delay is what remains beyond.
  */
-import type { Profile } from '../../task/profile';
-import type { Item } from '../../task/schema';
+import type { Profile } from '$lib/task/profile';
+import type { Item } from '$lib/task/schema';
 import type { ScheduledItem } from '../schedule';
 import { renderTone } from '../tone';
 

@@ -1,5 +1,5 @@
 /** Who, which run, by whose clock; and what lies here unsaved from before. */
-import type { Profile } from '../../../task/profile';
+import type { Profile } from '$lib/task/profile';
 import type { PlanRow, PlayerPayload } from '../../payload';
 import { field, h } from '../dom';
 import type { Entry, Override, Sitting } from '../session';

@@ -1,5 +1,5 @@
 /** Before and after arming: what to type at the console, what the check said, what a key does. */
-import { clockText } from '../../../task/time';
+import { clockText } from '$lib/task/time';
 import type { CheckItem } from '../../self-check';
 import type { PulseNews } from '../../pulses';
 import { button, h, keyCap } from '../dom';
