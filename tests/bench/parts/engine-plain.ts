@@ -28,8 +28,12 @@ export function convolveOnGrid(
     response.value(i * GRID)
   );
   const out = new Float64Array(length);
-  for (let i = 0; i < length; i += 1)
-    for (let k = 0; k < kernel.length && k <= i; k += 1) out[i]! += kernel[k]! * sticks[i - k]!;
+  for (let i = 0; i < length; i += 1) {
+    let sum = 0;
+    const reach = Math.min(kernel.length - 1, i);
+    for (let k = 0; k <= reach; k += 1) sum += kernel[k]! * sticks[i - k]!;
+    out[i] = sum;
+  }
   return out;
 }
 
