@@ -23,6 +23,7 @@ import { threeGammas } from '$lib/engine/response/bases';
 import { doubleGamma } from '$lib/engine/response/double-gamma';
 import { expectAllNear, expectNear } from './near';
 import reference from '../../fixtures/reference/glm.json';
+import longley from '../../fixtures/reference/longley.json';
 
 const { glm, ar1_likelihood: ar1 } = reference;
 const f64 = (list: readonly number[]) => Float64Array.from(list);
@@ -120,6 +121,20 @@ describe('ordinary least squares against certified and reference values', () => 
     expectNear(Math.sqrt(fit.variance), certified.residual_sd, 0, 1e-12);
     expectNear(fit.squares, certified.ssr, 0, 1e-12);
     expectNear(fit.r2, certified.r2, 0, 1e-14);
+  });
+
+  it('NIST Longley: seven nearly dependent columns', () => {
+    const { x, y, certified } = longley;
+    const fit = fitLeastSquares([ones(16), ...x.map(f64)], f64(y));
+    expect(fit.dropped).toEqual([]);
+    // The condition number, near 5e9, leaves nine or more of the certified fifteen digits.
+    expectAllNear(fit.coefficients, certified.b, 0, 1e-9);
+    certified.se.forEach((se, j) => {
+      const row = certified.se.map((_, k) => (k === j ? 1 : 0));
+      expectNear(testContrast(fit, row).standardError, se, 0, 1e-9);
+    });
+    expectNear(Math.sqrt(fit.variance), certified.residual_sd, 0, 1e-10);
+    expectNear(fit.r2, certified.r2, 0, 1e-12);
   });
 
   it('an fMRI-like run: effects, t, F, likelihood, residual autocorrelation', () => {
