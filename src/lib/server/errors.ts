@@ -73,6 +73,17 @@ export const notFound = (what = 'page'): never =>
     `There is no such ${what}, or it is not yours to see. Check the address, or go back to your labs.`
   );
 
+const size = (bytes: number) =>
+  bytes >= 1e6 ? `${(bytes / 1e6).toFixed(1)} MB` : `${Math.ceil(bytes / 1e3)} kB`;
+
+/** 413 for what is more than `cap` bytes. */
+export function refuseLarge(cap: number, what: string, sent?: number): never {
+  refuse(
+    413,
+    `${what} ${sent ? `of ${size(sent)} is` : 'is'} larger than the ${size(cap)} allowed here. Send less, or ask whoever runs Ebbline to raise the limit.`
+  );
+}
+
 /** A refusal that a form may show beside its fields; anything else is thrown on. */
 export function refusalOf(thrown: unknown): HttpError {
   if (isHttpError(thrown) && thrown.status < 500) return thrown;

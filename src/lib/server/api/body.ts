@@ -1,15 +1,5 @@
 /** Reading request bodies with a cap, so that nothing large is held in memory unasked. */
-import { refuse } from '../errors';
-
-const size = (bytes: number) =>
-  bytes >= 1e6 ? `${(bytes / 1e6).toFixed(1)} MB` : `${Math.ceil(bytes / 1e3)} kB`;
-
-export function refuseLarge(cap: number, what: string, sent?: number): never {
-  refuse(
-    413,
-    `${what} ${sent ? `of ${size(sent)} is` : 'is'} larger than the ${size(cap)} allowed here. Send less, or ask whoever runs Ebbline to raise the limit.`
-  );
-}
+import { refuse, refuseLarge } from '../errors';
 
 /** The media type of a request, without its parameters. */
 export const mediaOf = (request: Request): string =>

@@ -1,6 +1,6 @@
 import { copyFile, mkdir, readFile, rename, rm } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
-import type { Storage } from './storage';
+import type { Storage } from './types';
 
 export function folderStorage(folder: string): Storage {
   return {

@@ -1,6 +1,6 @@
 import { createReadStream } from 'node:fs';
 import { GetObjectCommand, NoSuchKey, PutObjectCommand, S3Client } from '@aws-sdk/client-s3';
-import type { Storage } from './storage';
+import type { Storage } from './types';
 
 export interface S3Settings {
   endpoint?: string | undefined;

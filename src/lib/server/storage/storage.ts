@@ -1,13 +1,7 @@
 /** Where stimulus files lie: a folder, or a bucket that speaks S3. Keys are `lab/sha256`, written once. */
 import { config } from '../config';
 import { folderStorage } from './folder';
-
-export interface Storage {
-  /** Take over a finished file; the same key may come again with the same bytes. */
-  put(key: string, path: string, size: number, mime: string): Promise<void>;
-  /** The bytes, or null when there is no such file. */
-  get(key: string): Promise<Uint8Array | null>;
-}
+import type { Storage } from './types';
 
 let current: Promise<Storage> | null = null;
 export const storage = (): Promise<Storage> => (current ??= openStorage());
