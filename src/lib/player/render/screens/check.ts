@@ -201,5 +201,5 @@ const soundItem = (isHeard: boolean, level: number): CheckItem => ({
   id: 'sound',
   level: isHeard ? 'green' : 'amber',
   text: isHeard ? 'Sound audible to the participant' : 'Sound not confirmed by the participant',
-  detail: `at most ${level} dB FS`
+  detail: `at most ${String(level).replace('-', '−')} dB FS`
 });

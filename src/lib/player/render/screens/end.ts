@@ -23,7 +23,7 @@ export function showEnd(
     isComplete ? 'Save it now.' : 'Kept as partial: save it now.',
     !isComplete
   );
-  const lost = store === null || store.failed !== null;
+  const lost = key === null || store === null || store.failed !== null;
 
   return new Promise((done) => {
     const safe = button(
@@ -40,7 +40,14 @@ export function showEnd(
         })()
     );
     safe.disabled = true;
-    const next = button('Next run', () => done(), false);
+    const next = button(
+      'Next run',
+      () => {
+        off();
+        done();
+      },
+      false
+    );
     next.disabled = payload.kind !== 'PRACTICE';
     const note = (what: string) => {
       saved.add(what);

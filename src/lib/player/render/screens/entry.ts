@@ -49,12 +49,21 @@ export async function askEntry(sitting: Sitting, suggest: Entry | null): Promise
       heading(payload.document.brief.title, 'Who, and which run?'),
       payload.kind === 'COLLECTION' ? null : h('p', {}, kindSentence(payload.kind)),
       error,
+      knownCodes(payload),
       ...formRows(fields),
       h('p', { class: 'buttons' }, h('button', { class: 'main', type: 'submit' }, 'Continue'))
     );
     sitting.show('entry', frame({ payload, main: [form, h('section', {}, unsaved, cautions())] }));
   });
 }
+
+/** The plan's participants, offered while typing. */
+const knownCodes = ({ plan }: PlayerPayload): HTMLElement =>
+  h(
+    'datalist',
+    { id: 'known' },
+    ...[...new Set(plan.map((row) => row.participant))].map((value) => h('option', { value }))
+  );
 
 const kindSentence = (kind: PlayerPayload['kind']): string =>
   kind === 'PROOF'

@@ -3,7 +3,7 @@ import { clockText } from '$lib/task/time';
 import type { CheckItem } from '../../self-check';
 import type { PulseNews } from '../../pulses';
 import { button, h, keyCap } from '../dom';
-import type { Entry, Sitting } from '../session';
+import { codeOf, listen, type Entry, type Sitting } from '../session';
 import { frame, heading } from './frame';
 
 const checks = (items: readonly CheckItem[]): HTMLElement =>
@@ -39,7 +39,14 @@ export type ReadyChoice = 'arm' | 'instructions' | 'back';
 export function askReady(sitting: Sitting, entry: Entry, items: readonly CheckItem[]): Promise<ReadyChoice> {
   const { payload } = sitting;
   const isPractice = payload.kind === 'PRACTICE';
-  return new Promise((done) => {
+  const seen = h('p', { class: 'soft', role: 'status' }, 'Pulses before arming are not obeyed.');
+  let pulses = 0;
+  const off = listen('keydown', (event) => {
+    if (event.repeat || codeOf(event) !== entry.profile.triggerKey) return;
+    pulses += 1;
+    seen.textContent = `${pulses === 1 ? 'One pulse' : `${pulses} pulses`} seen and not obeyed: the run is not armed.`;
+  });
+  return new Promise<ReadyChoice>((done) => {
     const arm = button(isPractice ? 'Start practice' : 'Arm the run', () => done('arm'), true);
     arm.setAttribute('data-focus', '');
     const left = h(
@@ -49,7 +56,7 @@ export function askReady(sitting: Sitting, entry: Entry, items: readonly CheckIt
       isPractice
         ? h('p', {}, 'No scanner is needed: time zero is the moment you start.')
         : h('p', {}, ...scanSentence(entry, payload.document.brief.tr)),
-      isPractice ? null : h('p', { class: 'soft' }, 'Pulses before arming are not obeyed.'),
+      isPractice ? null : seen,
       h(
         'div',
         { class: 'buttons' },
@@ -59,7 +66,7 @@ export function askReady(sitting: Sitting, entry: Entry, items: readonly CheckIt
       )
     );
     sitting.show('ready', frame({ payload, entry, main: [left, checks(items)] }));
-  });
+  }).finally(off);
 }
 
 export interface ArmedView {
