@@ -17,8 +17,11 @@ export class Field {
   readonly candidate: Float64Array;
   private readonly sums: Float64Array[];
   private readonly shares: Float64Array[];
+  /** The sums before the move under way: equal to them except between volumes `low` and `high` during one. */
   private readonly keptSums: Float64Array[];
   private readonly keptShares: Float64Array[];
+  private low = 0;
+  private high = 0;
 
   // Distinct (template, position) pairs among the changes under way, and each one's signs by column.
   private readonly spotTemplate: number[] = [];
@@ -43,11 +46,13 @@ export class Field {
 
   /** Forgets everything and adds these trials: also what keeps rounding from piling up over millions of moves. */
   rebuild(order: ArrayLike<number>, places: ArrayLike<number>): void {
-    for (const sum of this.sums) sum.fill(0);
-    for (const share of this.shares) share.fill(0);
+    for (const list of [this.sums, this.shares, this.keptSums, this.keptShares])
+      for (const sum of list) sum.fill(0);
+    this.information.fill(0);
+    this.open();
     for (let t = 0; t < order.length; t++) this.addTrial(order[t]!, places[t]!, 1);
     this.measure();
-    this.information.set(this.candidate);
+    this.settle();
   }
 
   /** Begins a list of changes. */
@@ -101,27 +106,36 @@ export class Field {
 
   /** Makes the noted changes part of the sums and `candidate` the present M. Call after `tryChanges`. */
   accept(): void {
+    this.open();
     for (let e = 0; e < this.spots; e++) {
       const signs = this.spotSigns[e]!;
       const template = this.templates.templates[this.spotTemplate[e]!]!;
       for (let i = 0; i < this.columns; i++)
         if (signs[i] !== 0) this.addEvent(template, this.spotPlace[e]!, i, signs[i]!);
     }
-    this.information.set(this.candidate);
+    this.settle();
   }
 
-  /** For moves of many trials: keeps the sums aside, to be put back by `putBack`. */
-  keep(): void {
+  /** Begins a move of many trials: `addTrial` for each that leaves and comes, `measure`, then `settle` or `putBack`. */
+  open(): void {
+    this.low = this.templates.volumes;
+    this.high = 0;
+  }
+
+  /** Undoes the move: only the volumes it touched are written. */
+  putBack(): void {
     for (let j = 0; j < this.columns; j++) {
-      this.keptSums[j]!.set(this.sums[j]!);
-      this.keptShares[j]!.set(this.shares[j]!);
+      copyBetween(this.keptSums[j]!, this.sums[j]!, this.low, this.high);
+      this.shares[j]!.set(this.keptShares[j]!);
     }
   }
 
-  putBack(): void {
+  /** Makes the move's sums and `candidate` the present ones. */
+  settle(): void {
+    this.information.set(this.candidate);
     for (let j = 0; j < this.columns; j++) {
-      this.sums[j]!.set(this.keptSums[j]!);
-      this.shares[j]!.set(this.keptShares[j]!);
+      copyBetween(this.sums[j]!, this.keptSums[j]!, this.low, this.high);
+      this.keptShares[j]!.set(this.shares[j]!);
     }
   }
 
@@ -131,32 +145,34 @@ export class Field {
       this.addEvent(this.templates.templates[part.template]!, place, part.column, sign);
   }
 
-  /** Writes M of the sums to `candidate`. */
+  /** Writes M of the changed sums to `candidate`: the present M and what changed between the volumes touched. */
   measure(): void {
-    const { columns, sums, shares, candidate } = this;
+    const { columns, sums, shares, keptSums, keptShares, candidate, information, low, high } = this;
     for (let i = 0; i < columns; i++)
       for (let j = 0; j <= i; j++) {
         let value = 0;
         const a = sums[i]!;
         const b = sums[j]!;
-        for (let n = 0; n < a.length; n++) value += a[n]! * b[n]!;
-        const c = shares[i]!;
-        const d = shares[j]!;
-        for (let k = 0; k < c.length; k++) value -= c[k]! * d[k]!;
-        candidate[i * columns + j] = value;
-        candidate[j * columns + i] = value;
+        const c = keptSums[i]!;
+        const d = keptSums[j]!;
+        for (let n = low; n < high; n++) value += a[n]! * b[n]! - c[n]! * d[n]!;
+        const e = shares[i]!;
+        const f = shares[j]!;
+        const g = keptShares[i]!;
+        const h = keptShares[j]!;
+        for (let k = 0; k < e.length; k++) value -= e[k]! * f[k]! - g[k]! * h[k]!;
+        const at = i * columns + j;
+        candidate[at] = information[at]! + value;
+        candidate[j * columns + i] = candidate[at]!;
       }
-  }
-
-  /** Makes `candidate` the present M, after `addTrial` and `measure`. */
-  settle(): void {
-    this.information.set(this.candidate);
   }
 
   private addEvent(template: Template, place: number, column: number, sign: number): void {
     const sum = this.sums[column]!;
     const from = template.from[place]!;
     const end = template.to[place]!;
+    if (from < this.low) this.low = from;
+    if (end > this.high) this.high = end;
     const values = template.values;
     for (let n = from, at = place * template.stride; n < end; n++, at++) sum[n]! += sign * values[at]!;
     const share = this.shares[column]!;
@@ -218,4 +234,8 @@ export class Field {
     for (let k = 0; k < rank; k++) value -= a.nuisance[g * rank + k]! * b.nuisance[h * rank + k]!;
     return value;
   }
+}
+
+function copyBetween(from: Float64Array, to: Float64Array, low: number, high: number): void {
+  for (let n = low; n < high; n++) to[n] = from[n]!;
 }

@@ -47,7 +47,7 @@ const FIRST_COOLING = 20_000;
 const HOT = 1e-3;
 const COLD = 1e-4;
 const LOG_RATIO = log(COLD / HOT);
-/** Sums are made anew after so many accepted moves; rounding drifts by about 1e-13 in that time. */
+/** Sums are made anew after so many accepted moves; rounding drifts by about 1e-12 in that time. */
 const REBUILD_EVERY = 50_000;
 const MAX_POSITIONS = 40_000;
 
@@ -242,7 +242,7 @@ export class Search {
   private scoreLarge(low: number, high: number): void {
     const { field, current } = this;
     const { next } = this.moves;
-    field.keep();
+    field.open();
     for (let t = low; t <= high; t++)
       if (this.isChanged(t)) {
         field.addTrial(current.order[t]!, current.places[t]!, -1);
