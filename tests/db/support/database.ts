@@ -1,7 +1,7 @@
 /** A database of this file's own, cloned from the migrated template; the application's pool points to it. */
 import type { Knex } from 'knex';
 import { join } from 'node:path';
-import { afterAll, beforeAll, inject } from 'vitest';
+import { afterAll, beforeAll, inject, vi } from 'vitest';
 import { closeDatabase, connect, database } from '$lib/server/db/client';
 import { TEMPLATE, withDatabase } from '../global-setup';
 
@@ -19,6 +19,8 @@ export function useDatabase({
   template = TEMPLATE,
   origin = 'http://ebbline.test'
 }: { template?: string | null; origin?: string } = {}): TestDatabase {
+  // Hashing and cloning take their time on a machine that does other work too; nothing here measures speed.
+  vi.setConfig({ testTimeout: 60_000, hookTimeout: 60_000 });
   const name = `t_${crypto.randomUUID().replaceAll('-', '')}`;
   const made = { url: '', ownerUrl: '' } as TestDatabase;
   const asServerOwner = async (sql: string, names: string[]) => {
