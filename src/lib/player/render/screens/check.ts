@@ -15,6 +15,8 @@ export interface CheckOutcome {
 
 /** How long frames are watched, seconds. */
 const WATCHED = 3;
+/** Going full screen costs frames of its own, which say nothing about the run, seconds. */
+const SETTLES = 0.7;
 
 /** Null: the operator went back to the entry. */
 export async function selfCheck(
@@ -166,14 +168,17 @@ function watchFrames(done: (frames: number[]) => void): () => void {
     cancelAnimationFrame(handle);
     done(frames);
   };
+  let begun = NaN;
   const each = (time: number) => {
-    frames.push(time / 1000);
-    if (time / 1000 - frames[0]! >= WATCHED) end();
+    const now = time / 1000;
+    if (Number.isNaN(begun)) begun = now;
+    if (now - begun >= SETTLES) frames.push(now);
+    if (now - begun >= SETTLES + WATCHED) end();
     else handle = requestAnimationFrame(each);
   };
   handle = requestAnimationFrame(each);
   // A hidden window gets no frames at all, and must say so too.
-  const timer = setTimeout(end, (WATCHED + 2) * 1000);
+  const timer = setTimeout(end, (SETTLES + WATCHED + 2) * 1000);
   return () => {
     ended = true;
     clearTimeout(timer);
