@@ -26,7 +26,8 @@ export default defineConfig({
     baseURL: url,
     viewport: { width: 1440, height: 900 },
     locale: 'en-GB',
-    trace: 'retain-on-failure',
+    // Traces cost a test a large part of its time: ask for one with --trace on.
+    screenshot: 'only-on-failure',
     launchOptions: {
       executablePath: process.env.CHROMIUM || '/usr/bin/chromium',
       args: [

@@ -118,7 +118,7 @@ test('after the server was killed the next start takes over, and stops everythin
   first.child.kill('SIGKILL');
   await first.ended;
   // The worker notices that its parent is gone; the database waits for the next start.
-  await expect.poll(() => workers.some(isAlive), { timeout: 15_000 }).toBe(false);
+  await expect.poll(() => workers.some(isAlive), { timeout: 30_000 }).toBe(false);
   expect(isDatabaseUp(folder)).toBe(true);
   const next = start(folder, port);
   await untilReady(next);
