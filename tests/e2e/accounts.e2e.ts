@@ -322,7 +322,10 @@ test('the demo lab opens with one button and shows its passwords once', async ({
 
   const operator = await elsewhere(browser, baseURL);
   await signIn(operator, { email, password });
-  await operator.getByRole('main').getByRole('link', { name: /Marram Lab/ }).click();
+  await operator
+    .getByRole('main')
+    .getByRole('link', { name: /Marram Lab/ })
+    .click();
   await expect(operator.getByText('You are operator of this lab.')).toBeVisible();
   await operator.context().close();
 });
