@@ -97,6 +97,18 @@ describe('identities', () => {
     expect(noncentralTail(50, 500, 0)).toBeGreaterThanOrEqual(0);
   });
 
+  it('ends, with a probability, for extreme arguments', () => {
+    for (const t of [-1e6, 0, 40, 1e6])
+      for (const df of [0.3, 7.5, 20_000])
+        for (const delta of [-60, 0, 60]) {
+          const p = noncentralTail(t, df, delta);
+          expect(p >= 0 && p <= 1).toBe(true);
+          expect(noncentralDensity(t, df, delta)).toBeGreaterThanOrEqual(0);
+        }
+    for (const alpha of [1e-100, 1e-15, 1 - 1e-12])
+      for (const df of [1, 5, 1e5]) expect(Number.isFinite(studentCritical(alpha, df))).toBe(true);
+  }, 30_000);
+
   it('refuses malformed numbers', () => {
     for (const call of [
       () => studentTail(NaN, 3),

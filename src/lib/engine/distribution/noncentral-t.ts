@@ -7,24 +7,26 @@ import { normalDensity, normalTail } from './normal';
  * exp(df (y − (e^{2y} − 1)/2)), smooth and falling fast to both sides, so that the trapezoid rule converges
  * exponentially; dividing by the same rule's sum of the density leaves no constant to compute.
  */
-function average(df: number, rate: number, part: (s: number) => number): number {
+function average(df: number, delta: number, part: (s: number) => number): number {
   // A third of the narrowest feature (the density, the integrand, and at few df the strip where both are analytic).
-  const step = Math.min(0.36, 1 / Math.sqrt(2 * df), 1 / (1 + rate)) / 3;
+  const step = Math.min(0.36, 1 / Math.sqrt(2 * df), 1 / (1 + Math.abs(delta))) / 3;
   const weight = (y: number) => exp(df * (y - expm1(2 * y) / 2));
-  const above = sumAround(step, 0, (y) => weight(y) * part(exp(y)));
-  const below = sumAround(step, 0, weight);
+  const above = sumAround(step, (y) => weight(y) * part(exp(y)));
+  const below = sumAround(step, weight);
   return above / below;
 }
 
 /** Σ f(k · step) over whole k, from the largest term outwards until terms no longer count. Unimodal f ≥ 0. */
-function sumAround(step: number, start: number, f: (y: number) => number): number {
-  let peak = start;
+function sumAround(step: number, f: (y: number) => number): number {
+  let peak = 0;
   let value = f(0);
   // In a far tail everything near 0 is 0: look to the left, where s is small and the tail heavy.
   while (value === 0 && peak * step > -60) {
     peak -= Math.max(1, Math.round(0.25 / step));
     value = f(peak * step);
   }
+  // Below the smallest double everywhere.
+  if (value === 0) return 0;
   for (const direction of [-1, 1]) {
     for (;;) {
       const next = f((peak + direction) * step);
@@ -60,7 +62,7 @@ export function noncentralTail(t: number, df: number, delta: number): number {
   requirePositive('degrees of freedom', df, 'Give more volumes or participants than columns.');
   return Math.min(
     1,
-    average(df, Math.max(Math.abs(delta), Math.abs(t)), (s) => normalTail(t * s - delta))
+    average(df, delta, (s) => normalTail(t * s - delta))
   );
 }
 
@@ -72,5 +74,5 @@ export function noncentralDensity(t: number, df: number, delta: number): number 
   requireFinite('t', t, 'Give a finite number.');
   requireFinite('non-centrality', delta, 'Use effect · √efficiency / noise SD.');
   requirePositive('degrees of freedom', df, 'Give more volumes or participants than columns.');
-  return average(df, Math.max(Math.abs(delta), Math.abs(t)), (s) => s * normalDensity(t * s - delta));
+  return average(df, delta, (s) => s * normalDensity(t * s - delta));
 }
