@@ -27,7 +27,7 @@ function chain(plan: number[], length: number, triggerKey: string): void {
     }, length);
   };
   paint('#000000');
-  addEventListener(
+  window.addEventListener(
     'keydown',
     (event) => {
       if (event.code === triggerKey) setTimeout(() => step(0), plan[0]!);

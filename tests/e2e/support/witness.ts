@@ -58,7 +58,7 @@ function observe(): void {
     frames.push({ at, seen: 0, blank: true });
   };
   requestAnimationFrame(watch);
-  addEventListener('keydown', (event) => keys.push({ code: event.code, at: event.timeStamp }), true);
+  window.addEventListener('keydown', (event) => keys.push({ code: event.code, at: event.timeStamp }), true);
   (window as unknown as { ebblineWitness: Testimony }).ebblineWitness = { frames, keys };
 }
 

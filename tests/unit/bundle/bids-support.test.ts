@@ -33,7 +33,7 @@ const check = (run: BidsRun) =>
 describe('the BIDS checks of the browser tests', () => {
   it('find nothing in a good dataset', async () => {
     expect(await check(good)).toEqual({ errors: [], warnings: [] });
-  }, 30_000);
+  }, 90_000);
 
   it('find a ragged row and a bad HED tag, by both validators', async () => {
     const { errors } = await check({
@@ -44,7 +44,7 @@ describe('the BIDS checks of the browser tests', () => {
     const codes = errors.map((one) => one.code);
     expect(codes.filter((code) => code.startsWith('TSV_EQUAL_ROWS'))).toHaveLength(2);
     expect(codes.some((code) => code.startsWith('HED_ERROR'))).toBe(true);
-  }, 30_000);
+  }, 90_000);
 
   it('find a stimulus file that is absent, by both validators', async () => {
     const tsv = good.tsv
@@ -53,7 +53,7 @@ describe('the BIDS checks of the browser tests', () => {
       .replace('right', 'right	n/a');
     const codes = (await check({ ...good, tsv })).errors.map((one) => one.code);
     expect(codes.filter((code) => code.startsWith('STIMULUS_FILE_MISSING'))).toHaveLength(2);
-  }, 30_000);
+  }, 90_000);
 
   it.each([
     ['CRLF', { tsv: good.tsv.replaceAll('\n', '\r\n') }],
@@ -71,5 +71,5 @@ describe('the BIDS checks of the browser tests', () => {
   it('read HED strings', async () => {
     expect(await hedFindings('Sensory-event, (Red, Blue)')).toEqual([]);
     expect(await hedFindings('Sensory-event, No-such-tag')).toHaveLength(1);
-  }, 30_000);
+  }, 90_000);
 });

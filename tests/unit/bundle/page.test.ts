@@ -1,6 +1,7 @@
 import { createHash } from 'node:crypto';
 import { Script } from 'node:vm';
 import { describe, expect, it } from 'vitest';
+import playerCode from '../../../src/lib/player/standalone.ts?bundle=iife';
 import { toBase64 } from '../../../src/lib/bundle/base64';
 import { jsonForHtml, scriptForHtml } from '../../../src/lib/bundle/escape';
 import { bundleFiles } from '../../../src/lib/bundle/pack';
@@ -64,6 +65,12 @@ describe('escaping', () => {
     const text = jsonForHtml(value);
     expect(text).not.toMatch(/[<\u2028\u2029]/);
     expect(JSON.parse(text)).toEqual(value);
+  });
+
+  it('leaves the real player a script that parses and ends nowhere early', () => {
+    const escaped = scriptForHtml(playerCode);
+    expect(escaped).not.toMatch(/<\/script|<!--/i);
+    expect(() => new Script(escaped)).not.toThrow();
   });
 
   it('escapes script ends whatever their case', () => {
