@@ -4,7 +4,7 @@
  */
 import { designReport, type DesignReport } from '$lib/engine/design/report';
 import { contrastRow, runLength, type CompiledRun, type Factor } from '$lib/task/compile';
-import { eventsByFactor, RESPONSE, runTimes } from '$lib/task/model';
+import { eventsByFactor, isReckonable, RESPONSE, runTimes } from '$lib/task/model';
 import { noticesOf, type Notice } from '$lib/task/notices';
 import type { Profile } from '$lib/task/profile';
 import type { Condition, Run, TaskDocument } from '$lib/task/schema';
@@ -98,7 +98,7 @@ export class DesignView {
 
   readonly report: DesignReport | null = $derived.by(() => {
     const { shown, run, compiled, factors, profile } = this.#host;
-    if (factors.length === 0) return null;
+    if (factors.length === 0 || !isReckonable(shown, run)) return null;
     const scales = this.#scales;
     const { tr, highPass, noise, contrasts } = shown.brief;
     const sampling = [profile.acquisitionTime, profile.acquisitionStart, profile.sliceReference];
