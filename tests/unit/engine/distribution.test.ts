@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { regularisedBeta } from '$lib/engine/distribution/beta';
 import { fisherTail } from '$lib/engine/distribution/fisher';
 import { noncentralDensity, noncentralTail } from '$lib/engine/distribution/noncentral-t';
@@ -12,6 +12,9 @@ import {
 import { EngineError } from '$lib/engine/errors';
 import { expectNear } from './near';
 import reference from '../../fixtures/reference/distribution.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 describe('tails against 30-digit values (mpmath)', () => {
   it('normal', () => {

@@ -1,8 +1,11 @@
 import fc from 'fast-check';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { cos, exp, expm1, log, log1p, pow, powerOfTwo, scaleByPowerOfTwo, sin } from '$lib/engine/elementary';
 import { bitsOf } from '$lib/engine/elementary/bits';
 import reference from '../../fixtures/reference/elementary.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 /** Distance of two doubles of the same sign in units in the last place. */
 function ulps(a: number, b: number): number {

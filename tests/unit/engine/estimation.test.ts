@@ -1,5 +1,5 @@
 import fc from 'fast-check';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { peakScale } from '$lib/engine/convolution/peak-scale';
 import { regressor } from '$lib/engine/convolution/regressor';
 import { EngineError } from '$lib/engine/errors';
@@ -24,6 +24,9 @@ import { doubleGamma } from '$lib/engine/response/double-gamma';
 import { expectAllNear, expectNear } from './near';
 import reference from '../../fixtures/reference/glm.json';
 import longley from '../../fixtures/reference/longley.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const { glm, ar1_likelihood: ar1 } = reference;
 const f64 = (list: readonly number[]) => Float64Array.from(list);

@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { EngineError } from '$lib/engine/errors';
 import {
   comparisonPower,
@@ -16,6 +16,9 @@ import {
 import { noncentralTail } from '$lib/engine/distribution/noncentral-t';
 import { expectNear } from './near';
 import reference from '../../fixtures/reference/power.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const oneSided = { alpha: 0.05, sides: 1 } as const;
 const twoSided = { alpha: 0.05, sides: 2 } as const;

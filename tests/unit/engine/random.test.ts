@@ -1,5 +1,8 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { seeded } from '$lib/engine/random';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 describe('seeded random numbers', () => {
   it('repeats for a seed and differs between seeds', () => {

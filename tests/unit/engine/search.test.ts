@@ -1,11 +1,14 @@
 import fc from 'fast-check';
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { peakScale } from '$lib/engine/convolution/peak-scale';
 import { regressor } from '$lib/engine/convolution/regressor';
 import { designReport } from '$lib/engine/design/report';
 import { EngineError } from '$lib/engine/errors';
 import { doubleGamma } from '$lib/engine/response/double-gamma';
 import { eventsOf, scoreEvents, Search, type SearchProblem, type SearchRules } from '$lib/engine/search';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const response = doubleGamma();
 
@@ -297,6 +300,18 @@ describe('the search', () => {
     expect(empty.score).toBe(0);
     expect(empty.perContrast[0]).toBeGreaterThan(0);
     expect(empty.perContrast.slice(1)).toEqual([0, 0]);
+  });
+
+  it('scores 10,000 events, and refuses an event that is none', () => {
+    const problem = problemWith(rulesWith());
+    const events = Array.from({ length: 10_000 }, (_, i) => ({
+      column: i % 2,
+      onset: (i * 7919) % 200,
+      duration: (i % 3) / 10
+    }));
+    expect(scoreEvents(problem, events).score).toBeGreaterThan(0);
+    for (const bad of [{ onset: NaN }, { duration: -1 }, { column: 2 }])
+      expect(() => scoreEvents(problem, [{ column: 0, onset: 0, duration: 1, ...bad }])).toThrow(EngineError);
   });
 
   it('refuses a problem whose lists do not fit', () => {

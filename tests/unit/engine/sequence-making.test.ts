@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { EngineError } from '$lib/engine/errors';
 import { seeded } from '$lib/engine/random';
 import {
@@ -23,6 +23,9 @@ import {
   williamsSquare
 } from '$lib/engine/sequence';
 import reference from '../../fixtures/reference/sequence.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const tally = (list: readonly number[], kinds: number) =>
   Array.from({ length: kinds }, (_, kind) => list.filter((value) => value === kind).length);

@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { exp, log } from '$lib/engine/elementary';
 import { EngineError } from '$lib/engine/errors';
 import { seeded } from '$lib/engine/random';
@@ -12,6 +12,9 @@ import {
   shuffleDistribution
 } from '$lib/engine/sequence';
 import reference from '../../fixtures/reference/sequence.json';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const sequences: Record<string, number[]> = {
   alternating_ABAB_20: Array.from({ length: 20 }, (_, t) => t % 2),

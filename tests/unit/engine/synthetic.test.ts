@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest';
+import { describe, expect, it, vi } from 'vitest';
 import { detectionColumns } from '$lib/engine/design/columns';
 import { designReport } from '$lib/engine/design/report';
 import { EngineError } from '$lib/engine/errors';
@@ -8,6 +8,9 @@ import { whitenerOf } from '$lib/engine/noise/whitener';
 import { seeded } from '$lib/engine/random';
 import { doubleGamma } from '$lib/engine/response/double-gamma';
 import { monteCarlo, noiseMaker, syntheticScan, type MonteCarloInput } from '$lib/engine/synthetic';
+
+// Seconds of arithmetic, more on a machine that does other things as well.
+vi.setConfig({ testTimeout: 60_000 });
 
 const models: NoiseModel[] = [
   { kind: 'white' },
