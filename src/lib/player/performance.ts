@@ -58,7 +58,7 @@ export function performanceOf(header: LogHeader, entries: readonly LogEntry[]): 
         windowId: e.windowId,
         response: e.responses[0] ?? null,
         time: first === undefined ? null : roundMicro(clock(first)),
-        correct: e.state === 'answered' ? null : e.state === 'press' ? null : e.state
+        correct: e.state === 'answered' ? null : e.state
       });
     }
   }

@@ -35,6 +35,15 @@ export function runTimes(doc: TaskDocument, run: Run, sampling: Sampling): Float
   });
 }
 
+/** Cells of drift columns above which design numbers would take seconds a time; no study comes near. */
+export const MAX_DESIGN_CELLS = 5_000_000;
+
+/** Whether the design numbers of a run are small enough to be reckoned while somebody waits. */
+export function isReckonable(doc: TaskDocument, run: Run): boolean {
+  const columns = Math.floor((2 * run.volumes * toSeconds(doc.brief.tr)) / doc.brief.highPass) + 1;
+  return columns * run.volumes <= MAX_DESIGN_CELLS;
+}
+
 export interface FactorEvents {
   factor: Factor;
   /** Seconds. */

@@ -1,6 +1,7 @@
 /** Notices: what is wrong or risky with a run, each with its reason, the figure behind it and the spot. */
 import { pushOverlap, setVolumes, type Edit } from './commands';
 import { compileRun, runLength, type CompiledRun } from './compile';
+import { isReckonable } from './model';
 import type { Profile } from './profile';
 import type { Run, TaskDocument } from './schema';
 import { secondsText } from './time';
@@ -224,6 +225,21 @@ const noPicture: Check = ({ doc, compiled }) => {
     );
 };
 
+const tooLarge: Check = ({ doc, run }) =>
+  isReckonable(doc, run)
+    ? []
+    : [
+        {
+          id: 'too large',
+          level: 'amber',
+          title: `${run.name} is too large for its design numbers`,
+          reason:
+            'So long a scan with so short a high-pass cutoff has too many drift columns. Split the run, or raise the cutoff.',
+          figure: `${run.volumes.toLocaleString('en')} volumes, cutoff ${doc.brief.highPass} s`,
+          spot: { at: 'run', runId: run.id }
+        }
+      ];
+
 const CHECKS: readonly Check[] = [
   overlaps,
   tooLong,
@@ -233,5 +249,6 @@ const CHECKS: readonly Check[] = [
   cannotEstimate,
   noPicture,
   beforeZero,
-  shortTail
+  shortTail,
+  tooLarge
 ];

@@ -73,6 +73,21 @@ export const FINGERS = [
 export const fingerSchema = z.enum(FINGERS);
 export const responseNameSchema = z.strictObject({ id, name: name(60), finger: fingerSchema });
 
+/** What the power of the task is reckoned from; absent until somebody says. */
+export const expectedSchema = z.strictObject({
+  /** Height of the response to one isolated trial, percent signal change. */
+  effect: z.number().finite().gt(0, 'more than 0 %').max(100),
+  /** Standard deviation of the noise of one volume, percent. */
+  noise: z.number().finite().gt(0, 'more than 0 %').max(100),
+  /** Standard deviation of the true effect between participants, percent. */
+  between: z.number().finite().min(0).max(100),
+  participants: z.number().int().min(2, 'at least two').max(10_000),
+  alpha: z.number().gt(0).max(0.5),
+  sides: z.union([z.literal(1), z.literal(2)]),
+  /** Power wanted. */
+  power: z.number().min(0.5).max(0.999)
+});
+
 export const briefSchema = z.strictObject({
   title: name(200),
   /** BIDS task label: letters and digits only. */
@@ -92,15 +107,17 @@ export const briefSchema = z.strictObject({
   /** Default number of stored volumes of a new run. */
   volumes: z.number().int().min(1).max(MAX_VOLUMES),
   /** High-pass cutoff, seconds. */
-  highPass: z.number().finite().gt(0).max(100_000),
+  highPass: z.number().finite().min(10, 'the cutoff is at least 10 s').max(100_000),
   noise: z.strictObject({
     kind: z.literal('ar1'),
-    rho: z.number().gt(-1).lt(1),
+    /** Noise of scans is not negatively correlated, and a negative rho has no value at another TR. */
+    rho: z.number().min(0, 'rho is 0 or more').lt(1, 'rho is less than 1'),
     /** The TR that rho belongs to, seconds. */
     rhoTr: z.number().gt(0)
   }),
   /** Scanner profile the task is planned with (a uuid of the lab's), or null for the plain defaults. */
   profile: z.uuid().nullable(),
+  expected: expectedSchema.optional(),
   conditions: z.array(conditionSchema).max(100),
   contrasts: z.array(contrastSchema).max(100),
   responses: z.array(responseNameSchema).max(20)
@@ -236,6 +253,7 @@ export const documentSchema = z.strictObject({
 
 export type Condition = z.infer<typeof conditionSchema>;
 export type Contrast = z.infer<typeof contrastSchema>;
+export type Expected = z.infer<typeof expectedSchema>;
 export type Finger = z.infer<typeof fingerSchema>;
 export type ResponseName = z.infer<typeof responseNameSchema>;
 export type Brief = z.infer<typeof briefSchema>;

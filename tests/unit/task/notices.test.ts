@@ -88,6 +88,14 @@ describe('notices', () => {
     expect(notice!.reason).toContain('follow-lantern, follow-chime');
   });
 
+  it('says when a run is too large for its design numbers', () => {
+    const { doc, runId } = sampleTask();
+    const at = (volumes: number, highPass: number) =>
+      ids({ ...doc, brief: { ...doc.brief, highPass }, runs: [{ ...doc.runs[0]!, id: runId, volumes }] });
+    expect(at(1200, 128)).toEqual([]);
+    expect(at(14_000, 10)).toEqual(['too large']);
+  });
+
   it('names a picture item without a picture', () => {
     const sample = sampleTask();
     const doc = addItem(withTrials(sample, [['lantern', 3]]), sample.lantern.card, 'picture').document;

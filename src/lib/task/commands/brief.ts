@@ -16,7 +16,8 @@ const FIELD: Partial<Record<keyof Brief, string>> = {
   volumes: 'volumes',
   highPass: 'high-pass cutoff',
   noise: 'noise',
-  profile: 'scanner profile'
+  profile: 'scanner profile',
+  expected: 'expected effect and noise'
 };
 
 function checked(doc: TaskDocument, change: Partial<Brief>): TaskDocument {
