@@ -108,6 +108,8 @@ test('names of any kind are text and nothing else', async ({ page }) => {
 });
 
 test('can be used with a screen reader and with low vision', async ({ page }) => {
+  // Four analyses of a full page.
+  test.slow();
   const { task } = await newcomerWithTask(page, { volumes: 20 });
   // Trials with blanks between them: one that overlaps another is partly covered by it and can be hit only beside that
   // (a red Notice says so); grips in narrow blanks have the table and the keyboard as their equivalent.
@@ -134,7 +136,7 @@ test('a run of 5,000 trials opens and can be edited', async ({ page }) => {
   await page.keyboard.press('End');
   await expect(page.getByRole('option', { name: /^Trial 5000, / })).toBeFocused();
   await page.keyboard.press('ArrowUp');
-  await expect(page.getByRole('option', { name: /^Trial 4979, |^Trial 4980, / })).toBeFocused();
+  await expect(page.getByRole('option', { name: /^Trial 4980, / })).toBeFocused();
   await card(page, 'follow-both').focus();
   await page.keyboard.press('Enter');
   await expect(page.getByRole('alert').filter({ hasText: 'at most 5,000 trials' })).toBeVisible();
