@@ -70,8 +70,13 @@ export async function recentChanges(db: Knex, labId: string): Promise<DeskChange
   return [...ofTasks, ...ofLab].sort((a, b) => b.at.getTime() - a.at.getTime()).slice(0, SHOWN);
 }
 
-const inFew = (words: string[]): string =>
-  words.length > 2 ? `${words[0]}, and ${words.length - 1} more edits` : words.join('; ') || 'Saved';
+/** The words of a save's edits as the beginning of a sentence. */
+function inFew(words: string[]): string {
+  const few =
+    words.length > 2 ? `${words[0]}, and ${words.length - 1} more edits` : words.join('; ') || 'saved';
+  return capital(few);
+}
+const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
 
 /** An audit entry as a sentence; null for what the saves tell already. */
 function wordsOf({ action, details }: AuditEntry): string | null {
@@ -100,6 +105,6 @@ function wordsOf({ action, details }: AuditEntry): string | null {
     case 'task removed':
       return `Removed the task ‘${say('name')}’`;
     default:
-      return action.charAt(0).toUpperCase() + action.slice(1);
+      return capital(action);
   }
 }
