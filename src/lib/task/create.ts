@@ -22,13 +22,17 @@ export function newId(): string {
   return Array.from(bytes, (b) => ALPHABET[b % ALPHABET.length]).join('');
 }
 
-/** A BIDS task label suggested from a title: letters and digits only, first letter small. */
+/** A BIDS task label suggested from a title: letters and digits only, each word after the first begun large. */
 export function suggestLabel(title: string): string {
-  const plain = title
-    .normalize('NFKD')
-    .replace(/[^A-Za-z0-9]/g, '')
-    .slice(0, 40);
-  return plain ? plain[0]!.toLowerCase() + plain.slice(1) : 'task';
+  const words =
+    title
+      .normalize('NFKD')
+      .replace(/\p{M}/gu, '')
+      .match(/[A-Za-z0-9]+/g) ?? [];
+  const joined = words
+    .map((word, i) => (i === 0 ? word[0]!.toLowerCase() : word[0]!.toUpperCase()) + word.slice(1))
+    .join('');
+  return joined.slice(0, 40) || 'task';
 }
 
 export interface NewTask {
