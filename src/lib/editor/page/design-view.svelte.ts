@@ -9,7 +9,7 @@ import { noticesOf, type Notice } from '$lib/task/notices';
 import type { Profile } from '$lib/task/profile';
 import type { Condition, Run, TaskDocument } from '$lib/task/schema';
 import { MICROS, toSeconds } from '$lib/task/time';
-import { mapOf } from '../plain';
+import { idSet, mapOf } from '../plain';
 import { LiveSignal } from './live-signal';
 
 export interface DesignHost {
@@ -79,8 +79,15 @@ export class DesignView {
     );
   });
 
+  /** Factors that have an event on this run. */
+  readonly present: Factor[] = $derived.by(() => {
+    const { compiled, factors } = this.#host;
+    const keys = idSet(compiled.events.map((e) => e.factor));
+    return factors.filter((f) => keys.has(f.key));
+  });
+
   readonly curves: PredictedCurve[] = $derived.by(() => {
-    const { compiled, factors, shown } = this.#host;
+    const { compiled, shown } = this.#host;
     const scales = this.#scales;
     const grid = this.drawGrid;
     const even = { from: grid.from * MICROS, step: grid.step * MICROS, count: grid.count };
@@ -89,7 +96,8 @@ export class DesignView {
       () => new LiveSignal(RESPONSE, even, scales)
     );
     signal.update(compiled.events);
-    return factors.map((factor) => ({
+    // A condition without trials on this run has nothing to draw.
+    return this.present.map((factor) => ({
       factor,
       condition: shown.brief.conditions.find((c) => c.id === factor.conditionId),
       values: signal.values(factor.key)
