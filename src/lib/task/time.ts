@@ -9,10 +9,10 @@ export const gridPoint = (k: number, tr: number, parts: number): number => Math.
 
 /** Nearest point of the TR/parts grid, µs. */
 export const snapToGrid = (micros: number, tr: number, parts: number): number =>
-  gridPoint(Math.round((micros * parts) / tr), tr, parts);
+  gridPoint(Math.round((micros * parts) / tr), tr, parts) + 0; // never minus zero
 
 /** Whole milliseconds, µs. */
-export const snapToMs = (micros: number): number => Math.round(micros / 1000) * 1000;
+export const snapToMs = (micros: number): number => Math.round(micros / 1000) * 1000 + 0;
 
 /** Exact decimal seconds of integer µs with at least `least` decimals: 62250000 → `62.250`. */
 export function secondsText(micros: number, least = 3): string {

@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { gridPoint, parseSeconds, secondsText, snapToGrid } from '../../../src/lib/task/time';
+import { gridPoint, parseSeconds, secondsText, snapToGrid, snapToMs } from '../../../src/lib/task/time';
 
 describe('times', () => {
   it('keeps every point of an hour at TR 0.735 s on a TR/4 grid within 1 µs', () => {
@@ -14,6 +14,9 @@ describe('times', () => {
     expect(snapToGrid(1_400_000, 1_500_000, 4)).toBe(1_500_000);
     expect(snapToGrid(-1_400_000, 1_500_000, 1)).toBe(-1_500_000);
     expect(snapToGrid(100_000, 735_000, 4)).toBe(183_750);
+    // toBe tells minus zero from zero.
+    expect(snapToGrid(-1000, 1_500_000, 4)).toBe(0);
+    expect(snapToMs(-100)).toBe(0);
   });
 
   it('writes and reads seconds without loss', () => {
