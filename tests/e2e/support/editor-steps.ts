@@ -60,7 +60,7 @@ export async function addCard(page: Page, wish: CardWish): Promise<void> {
   await page.getByRole('button', { name: 'Add a card' }).click();
   await fillIn(page, 'Card’s name', wish.name);
   await page.getByLabel('Condition', { exact: true }).selectOption({ label: wish.condition });
-  await fillIn(page, 'Length of the trial', wish.length);
+  await fillIn(page, 'Trial length', wish.length);
   const items = page.getByRole('list', { name: 'Items' });
   // A new card shows a word; another kind takes its place.
   await items.getByRole('button').first().click();
