@@ -28,7 +28,8 @@ import { Scanner } from './support/scanner';
 import { callWitness, hearWitness } from './support/witness';
 
 // A trace takes pictures of the page all the time, which costs frames.
-test.use({ trace: 'off' });
+// A label that was renamed fails at once, not when the whole test's time is over.
+test.use({ trace: 'off', actionTimeout: 30_000 });
 
 const volumes = 34;
 const brief = {
