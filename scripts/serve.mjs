@@ -53,8 +53,10 @@ async function main() {
   env.PORT = String(port);
   env.ORIGIN ||= `http://${env.HOST === '0.0.0.0' || env.HOST === '::' ? 'localhost' : env.HOST}:${port}`;
   env.SHUTDOWN_TIMEOUT ||= '2';
+  // The application refuses what is too large by itself, in words that a browser reads only after it has sent the
+  // file: so five times the limit is let through to it, and only more than that is cut off here.
   env.BODY_SIZE_LIMIT ||= String(
-    1_000_000 * (1 + Math.max(Number(env.UPLOAD_LIMIT_MB) || 20, Number(env.DOCUMENT_LIMIT_MB) || 16))
+    1_000_000 * (1 + Math.max(5 * (Number(env.UPLOAD_LIMIT_MB) || 20), Number(env.DOCUMENT_LIMIT_MB) || 16))
   );
   for (const file of ['build/index.js', 'build/jobs/worker.js'])
     if (!existsSync(file)) throw new PlainError(`${file} is missing: run npm start, or npm run build.`);

@@ -17,7 +17,7 @@ test('a bundle is chosen, packed and listed by its hash; red Notices are named',
   // Six trials beyond the scan's end.
   await openWith(page, task, 'pack', lanterns({ trials: 12, volumes: 30 }));
   await expect(page.getByRole('region', { name: 'Runs and their Notices' })).toContainText(
-    /Run 1 · 12 trials, 30 volumes · \d+ red/
+    /Run 1 · 12 trials, 30 volumes ·\s+\d+ red/
   );
   await expect(page.getByText(/red Notices? stands? above/)).toBeVisible();
   await expect(page.getByRole('region', { name: 'Cautions' })).toContainText(

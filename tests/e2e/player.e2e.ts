@@ -128,6 +128,7 @@ test('PRACTICE goes from entry to files by keyboard alone, with feedback and wit
 }) => {
   const bundle = await sampleFolder({ onsets, volumes: 7 }, { kind: 'PRACTICE' });
   const page = await opened(browser, bundle);
+  await expect(page.getByLabel('Participant code')).toBeFocused();
   await page.keyboard.type('07');
   await page.keyboard.press('Enter');
   await expect(playerIn(page, 'check')).toBeVisible();

@@ -54,7 +54,9 @@ export class Draft<T> {
       return;
     }
     // A commit may refuse for a reason that only the whole document knows.
-    this.message = this.commit(value) ?? null;
+    const refusal = this.commit(value);
+    // An arrow function may give back what it assigned; only a sentence is a refusal.
+    this.message = typeof refusal === 'string' ? refusal : null;
     if (this.message === null && this.text === this.shown()) this.text = null;
   }
 }

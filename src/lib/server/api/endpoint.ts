@@ -7,7 +7,7 @@ import { z } from 'zod';
 import { labOf, memberOf, OWNED_KINDS, type Membership, type Right } from '../auth/member';
 import type { SessionUser } from '../auth/lucia';
 import { config } from '../config';
-import { accept, notFound, refuse } from '../errors';
+import { accept, notFound, refuse, refuseLarge } from '../errors';
 import { readBytes, readJson, needMedia } from './body';
 
 /** What a file answers with, for the description. */
@@ -156,8 +156,19 @@ async function readBody<B>(body: Definition<never, never, B, never>['body'], req
   return undefined as B;
 }
 
+function tooLarge(): unknown {
+  try {
+    return refuseLarge(config().uploadLimit, 'What was sent');
+  } catch (refusal) {
+    return refusal;
+  }
+}
+
 function errorResponse(thrown: unknown, event: RequestEvent): Response {
   if (isRedirect(thrown)) throw thrown;
+  // The framework's own limit on a body (BODY_SIZE_LIMIT) throws an error of its own.
+  if (!isHttpError(thrown) && (thrown as { status?: unknown } | null)?.status === 413)
+    return errorResponse(tooLarge(), event);
   if (!isHttpError(thrown)) {
     console.error(`${event.request.method} ${event.url.pathname} failed`, thrown);
     const message =
