@@ -9,14 +9,13 @@ import { buildSchedule } from '../schedule';
 import { loadPictures } from './assets';
 import { CanvasStage } from './canvas-stage';
 import type { AttemptRecord } from './files';
+import { HoldToEnd } from './hold-to-end';
 import type { CheckOutcome } from './screens/check';
 import { startingSoon } from './screens/participant';
 import { armedView } from './screens/ready';
 import { codeOf, listen, pageNow, pageTime, type Entry, type Sitting } from './session';
 import type { Speaker } from './speaker';
 
-/** Shift+End held for this long ends the run, ms. */
-const HOLD = 1000;
 /** Feedback of PRACTICE stays this long, ms. */
 const FEEDBACK = 700;
 /** A timer beside the frames, which stop in a hidden window, ms. */
@@ -191,7 +190,7 @@ interface Ears {
 function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): () => void {
   const isTaken = (code: string) =>
     code === profile.triggerKey || profile.responseKeys.some((k) => k.code === code);
-  let holding: ReturnType<typeof setTimeout> | undefined;
+  const hold = new HoldToEnd(() => runtime.abort(pageNow(), 'ended by the operator'));
   let lock: WakeLockSentinel | null = null;
   const title = document.title;
   const stayAwake = () =>
@@ -200,13 +199,12 @@ function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): 
       .then((got) => (lock = got))
       .catch(() => onAlarm('The browser does not keep the screen awake: see that no screen saver starts.'));
   stayAwake();
-  const letGo = () => clearTimeout(holding);
   const focus = (state: 'lost' | 'back') => () => {
     runtime.focus(state, pageNow());
     const isLost = state === 'lost';
     alarm(isLost ? 'KEYS ARE LOST: click this window' : title);
     onAlarm(isLost ? 'Another window receives the keys: click into this one.' : '');
-    if (isLost) letGo();
+    if (isLost) hold.letGo();
   };
   const off = [
     listen(
@@ -217,10 +215,7 @@ function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): 
         event.preventDefault();
         runtime.keyDown(code, page, event.repeat);
         if (event.repeat) return;
-        if (event.shiftKey && code === 'End') {
-          letGo();
-          holding = setTimeout(() => runtime.abort(pageNow(), 'ended by the operator'), HOLD);
-        }
+        hold.down(code, event.shiftKey);
         if (isTaken(code)) return;
         if (code === 'KeyF' && !document.fullscreenElement)
           void document.documentElement.requestFullscreen?.().catch(() => {});
@@ -233,7 +228,7 @@ function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): 
     listen(
       'keyup',
       (event) => {
-        letGo();
+        hold.up(codeOf(event));
         runtime.keyUp(codeOf(event), pageTime(event));
       },
       true
@@ -253,7 +248,7 @@ function listenToRun({ runtime, profile, canvasStage, onAlarm, onTurn }: Ears): 
     )
   ];
   return () => {
-    letGo();
+    hold.letGo();
     off.forEach((end) => end());
     document.title = title;
     void lock?.release();

@@ -30,7 +30,8 @@ export function showEnd(
       'The files are safe',
       () =>
         void (async () => {
-          if (key !== null) await store?.markSafe(key);
+          // A store that broke keeps nothing anyway: the operator, who has the files, must not be kept here by it.
+          if (key !== null) await store?.markSafe(key).catch(() => {});
           off();
           status.textContent = 'Safe to close: this window may be closed, or the next run begun.';
           title.replaceWith(heading(isComplete ? 'Run complete.' : 'Ended early.', 'Safe to close.'));
