@@ -35,6 +35,7 @@ export async function syntheticBench(): Promise<BenchRow[]> {
     ['white', { kind: 'white' }],
     ['AR(1) 0.3', { kind: 'ar1', rho: 0.3, rhoTr: 2 }],
     ['AR(1) + white', { kind: 'ar1-white', rho: 0.6, rhoTr: 2, share: 0.5 }],
+    ['1/f', { kind: 'one-over-f', exponent: 0.8 }],
     ['given', { kind: 'given', correlations: [0.4, 0.2, 0.1] }]
   ];
   for (const [name, noise] of models) {

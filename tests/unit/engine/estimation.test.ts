@@ -27,6 +27,8 @@ import longley from '../../fixtures/reference/longley.json';
 
 // Seconds of arithmetic, more on a machine that does other things as well.
 vi.setConfig({ testTimeout: 60_000 });
+// A failure here is one that anyone can see again.
+fc.configureGlobal({ seed: 20261201 });
 
 const { glm, ar1_likelihood: ar1 } = reference;
 const f64 = (list: readonly number[]) => Float64Array.from(list);
@@ -50,7 +52,10 @@ const weights = (a: number, b: number, columns = 9) => [a, b, ...new Array<numbe
 
 describe('QR', () => {
   it('Q·R = A, QᵀQ = 1, also for dependent columns', () => {
-    const number = fc.double({ min: -10, max: 10, noNaN: true });
+    // Squares of numbers near 1e-300 are 0 in a double: nothing smaller than 1e-9 is asked beside 0 itself.
+    const number = fc
+      .double({ min: -10, max: 10, noNaN: true })
+      .map((value) => (Math.abs(value) < 1e-9 ? 0 : value));
     fc.assert(
       fc.property(
         fc.array(fc.array(number, { minLength: 7, maxLength: 7 }), { minLength: 1, maxLength: 5 }),
@@ -244,7 +249,7 @@ describe('poor designs and bad data', () => {
     const fit = fitLeastSquares([x, b, ones(5)], y);
     expect(fit.dropped).toEqual([2]);
     expect(testContrast(fit, [1, 0, 0])).toMatchObject({ estimable: false, effect: 0, t: 0, pTwoSided: 1 });
-    expect(testContrast(fit, [1, 0, 0]).reason).toMatch(/Column 3 depends/);
+    expect(testContrast(fit, [1, 0, 0]).reason).toMatch(/Column 3 depends.*Leave that column out/);
     const difference = testContrast(fit, [1, -1, 0]);
     expectNear(difference.effect, 10 / 3 - 1, 0, 1e-13);
     expect(testJointly(fit, [[0, 1, 0]])).toMatchObject({ f: 0, p: 1 });
@@ -300,7 +305,9 @@ describe('poor designs and bad data', () => {
       });
     }
     expect(fits[2]!.df).toBe(0);
-    expect(testContrast(fits[2]!, [0, 0, 0, 0, 1, 0, 0, 0]).reason).toMatch(/nothing is left/);
+    expect(testContrast(fits[2]!, [0, 0, 0, 0, 1, 0, 0, 0]).reason).toMatch(
+      /nothing is left.*Use fewer columns/
+    );
     const flat = estimateAr1([ones(9)], ones(9), 'REML');
     expect(flat.rho).toBe(0);
     expect(autocorrelation(new Float64Array(4), 2)).toEqual(new Float64Array(3));

@@ -56,23 +56,36 @@ export function reportContrast(
     reason
   });
   if (weights.every((weight) => weight === 0))
-    return refused([], 'All weights are 0, so the contrast asks nothing.');
+    return refused(
+      [],
+      'All weights are 0, so the contrast asks nothing. Give at least one weight other than 0.'
+    );
   const reading = readContrast(space, weights);
   if (reading.estimable)
     return { name, weights, estimable: true, efficiency: 1 / reading.variance, confounded: [], reason: null };
 
   const empty = names.filter((_, j) => isEmpty[j]! && weights[j] !== 0);
-  if (empty.length > 0) return refused(empty, `No event of ${listed(empty)} reaches a volume.`);
+  if (empty.length > 0)
+    return refused(
+      empty,
+      `No event of ${listed(empty)} reaches a volume. Place one on the run, or leave it out of the contrast.`
+    );
   const largest = Math.max(...reading.blind.map(Math.abs));
   const involved = names.filter((_, j) => Math.abs(reading.blind[j]!) > 1e-6 * largest);
   const nuisance = nuisanceOf(reading.blind);
   const confounded = [...involved, ...nuisance];
   if (involved.length === 1 && nuisance.length > 0)
-    return refused(confounded, `${listed(involved)} cannot be told from ${listed(nuisance)}.`);
+    return refused(confounded, `${listed(involved)} cannot be told from ${listed(nuisance)}. ${SLOW}`);
   if (confounded.length === 1)
-    return refused(confounded, `Nothing of ${listed(confounded)} is left beside drift and noise.`);
-  return refused(confounded, `${listed(confounded)} cannot be told apart.`);
+    return refused(confounded, `Nothing of ${listed(confounded)} is left beside drift and noise. ${SLOW}`);
+  return refused(
+    confounded,
+    `${listed(confounded)} cannot be told apart. Vary the order and gaps of their events, or model fewer columns.`
+  );
 }
+
+/** The way out where a column is as slow as what is taken out beside it. */
+const SLOW = 'Let it change faster than the drift does, or choose a longer cutoff.';
 
 function listed(names: readonly string[]): string {
   const quoted = names.map((name) => `“${name}”`);

@@ -41,12 +41,16 @@ export function testContrast(fit: Fit, weights: readonly number[]): TTest {
     reason
   });
   if (weights.every((weight) => weight === 0))
-    return refused('All weights are 0, so the contrast asks nothing.');
+    return refused('All weights are 0, so the contrast asks nothing. Give at least one weight other than 0.');
   const blind = unestimable(fit, weights);
   if (blind !== null)
-    return refused(`Column ${blind + 1} depends on others, so this contrast cannot be estimated.`);
+    return refused(
+      `Column ${blind + 1} depends on others, so this contrast cannot be estimated. Leave that column out, or ask for a difference.`
+    );
   if (fit.df <= 0)
-    return refused('There are as many independent columns as volumes: nothing is left to judge by.');
+    return refused(
+      'There are as many independent columns as volumes: nothing is left to judge by. Use fewer columns or more volumes.'
+    );
   const effect = effectOf(fit, weights);
   const spread = forwardSubstitute(
     fit.qr.r,
@@ -89,7 +93,9 @@ export function testJointly(fit: Fit, rows: readonly (readonly number[])[]): FTe
       return refused(`Column ${blind + 1} depends on others, so a row cannot be estimated.`);
   }
   if (fit.df <= 0)
-    return refused('There are as many independent columns as volumes: nothing is left to judge by.');
+    return refused(
+      'There are as many independent columns as volumes: nothing is left to judge by. Use fewer columns or more volumes.'
+    );
   // With G = R⁻ᵀCᵀ, C (XᵀV⁻¹X)⁻¹ Cᵀ = GᵀG; factoring G = Q S gives (Cb)ᵀ(GᵀG)⁻¹(Cb) = |S⁻ᵀ Cb|².
   const spread = rows.map((row) =>
     Float64Array.from(
