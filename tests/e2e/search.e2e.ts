@@ -38,6 +38,8 @@ test('rules that clash are named before the start', async ({ page }) => {
   await expect(page.getByRole('main').getByRole('alert')).toContainText('‘short’ is not a number');
   await type(page, 'least', '1.5');
   await expect(search(page)).toBeEnabled();
+  await type(page, 'Seed', 'spring tide');
+  await expect(page.getByRole('main').getByRole('alert')).toHaveCount(0);
   await page.getByRole('checkbox', { name: 'lantern − chime' }).uncheck();
   await expect(page.getByText('No contrast is chosen')).toBeVisible();
   await expectAccessible(page);
