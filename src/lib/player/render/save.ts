@@ -30,11 +30,36 @@ export async function saveToFolder(files: readonly OutFile[]): Promise<boolean> 
   } catch {
     return false;
   }
+  await writeInto(folder, files);
+  return true;
+}
+
+/**
+ * Writes the files, or none of them where one would take the place of another run's: a bundle packed anew, or
+ * another computer, counts its attempts from 1 again. The same content again is no harm. Throws a sentence.
+ */
+export async function writeInto(folder: FileSystemDirectoryHandle, files: readonly OutFile[]): Promise<void> {
+  for (const { name, text } of files) {
+    const there = await contentOf(folder, name);
+    if (there !== null && there !== text)
+      throw new Error(
+        `${name} is in that folder already, with another run in it, and nothing was written`
+      );
+  }
   for (const file of files) {
     const handle = await folder.getFileHandle(file.name, { create: true });
     const stream = await handle.createWritable();
     await stream.write(file.text);
     await stream.close();
   }
-  return true;
+}
+
+/** Null where there is no such file, or only an empty one. */
+async function contentOf(folder: FileSystemDirectoryHandle, name: string): Promise<string | null> {
+  try {
+    return (await (await (await folder.getFileHandle(name)).getFile()).text()) || null;
+  } catch (problem) {
+    if ((problem as { name?: unknown } | null)?.name === 'NotFoundError') return null;
+    throw problem;
+  }
 }

@@ -95,7 +95,7 @@ export function showEnd(
               () =>
                 void toFolder().catch(
                   (e: unknown) =>
-                    (status.textContent = `The folder refused the files: ${String(e)}. Use the other buttons.`)
+                    (status.textContent = `Not saved: ${e instanceof Error ? e.message : String(e)}. Choose another folder, or use the other buttons.`)
                 )
             )
           : null
