@@ -42,9 +42,7 @@ export async function writeInto(folder: FileSystemDirectoryHandle, files: readon
   for (const { name, text } of files) {
     const there = await contentOf(folder, name);
     if (there !== null && there !== text)
-      throw new Error(
-        `${name} is in that folder already, with another run in it, and nothing was written`
-      );
+      throw new Error(`${name} is in that folder already, with another run in it, and nothing was written`);
   }
   for (const file of files) {
     const handle = await folder.getFileHandle(file.name, { create: true });
