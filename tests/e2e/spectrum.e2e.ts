@@ -43,6 +43,9 @@ test('spectrum, matrix, correlations and power, each as picture, table, TSV and 
   const picture = await saved(page, 'Spectrum: save the picture as SVG');
   expect(picture.text).toContain('xmlns="http://www.w3.org/2000/svg"');
   expect(picture.text).not.toContain('var(--');
+  await page.getByRole('checkbox', { name: /^Preview mild saturation/ }).check();
+  await expect(page.getByRole('img', { name: /responses added, and with mild saturation$/ })).toBeVisible();
+
   await page.getByText('The numbers as a table').first().click();
   await expect(page.getByRole('region', { name: 'Power: table' })).toBeVisible();
   await expectAccessible(page);

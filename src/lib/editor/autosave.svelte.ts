@@ -5,6 +5,7 @@
  */
 import { canonicalJson } from '$lib/task/canonical';
 import type { TaskDocument } from '$lib/task/schema';
+import { cut } from '$lib/task/text';
 import type { DocumentClient } from './document-client';
 import type { KeptStore } from './kept-edits';
 
@@ -72,7 +73,7 @@ export class Autosave {
   /** Called after every edit, undo and redo. */
   edited(document: TaskDocument, words: string): void {
     const before = this.#pending?.words ?? [];
-    this.#pending = { document, words: [...before, words.slice(0, LONGEST_WORDS)].slice(-MOST_WORDS) };
+    this.#pending = { document, words: [...before, cut(words, LONGEST_WORDS)].slice(-MOST_WORDS) };
     void this.#keep();
     if (this.state.kind === 'stale' || this.state.kind === 'signed-out') return;
     if (this.state.kind !== 'waiting') this.state = { kind: 'saving' };

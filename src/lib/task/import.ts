@@ -15,6 +15,7 @@ import {
   type TaskDocument,
   type Trial
 } from './schema';
+import { cut } from './text';
 import { parseSeconds } from './time';
 
 /** Larger files are refused before they are read. */
@@ -143,7 +144,7 @@ export function importEventTable(doc: TaskDocument, text: string, options: Impor
   }
 }
 
-const clip = (text: string) => (text.length > 40 ? `${text.slice(0, 40)}…` : text);
+const clip = (text: string) => (text.length > 40 ? `${cut(text, 40)}…` : text);
 
 function build(
   doc: TaskDocument,
@@ -190,7 +191,7 @@ function build(
     );
   const run: Run = {
     id: newId(),
-    name: (options.name?.trim() || `Run ${doc.runs.length + 1}`).slice(0, 60),
+    name: cut(options.name?.trim() || `Run ${doc.runs.length + 1}`, 60),
     volumes,
     trials
   };
@@ -234,7 +235,7 @@ function fits(card: Card, condition: string, duration: number): boolean {
 
 /** A card that shows a fixation for as long as the event lasts: what is shown instead is the experimenter's to add. */
 function eventCard(type: string, condition: string, duration: number, cards: Card[]): Card {
-  const base = type.slice(0, 110);
+  const base = cut(type, 110);
   const names = new Set(cards.map((c) => c.name));
   let name = base;
   for (let n = 2; names.has(name); n++) name = `${base} ${n}`;

@@ -83,6 +83,16 @@ describe('importing an event table', () => {
     expect(report.warnings[0]).toMatch(/268 volumes/);
   });
 
+  it('never cuts a character in half, which the store would refuse', () => {
+    const name = 'a' + '😀'.repeat(80);
+    const result = importEventTable(doc, table(`1\t2\t${name}`), { name });
+    if (!result.ok) throw new Error(result.message);
+    const { cards, runs } = result.edit.document;
+    for (const text of [cards.at(-1)!.name, runs.at(-1)!.name])
+      expect(text).not.toMatch(/[\uD800-\uDBFF](?![\uDC00-\uDFFF])/);
+    expect(runs.at(-1)!.name).toBe('a' + '😀'.repeat(29));
+  });
+
   it('refuses what is no event table, saying what is expected', () => {
     expect(message('')).toMatch(/empty/);
     expect(message('a,b\n1,2\n')).toMatch(/not separated by tabs/);

@@ -1,4 +1,5 @@
 import type { Condition, Contrast } from '$lib/task/schema';
+import { cut } from '$lib/task/text';
 
 export const weightOf = (contrast: Contrast, condition: string): number => contrast.weights[condition] ?? 0;
 
@@ -57,5 +58,5 @@ export function contrastName(
       .join(' + ');
   const [plus, minus] = [side(1), side(-1)];
   const name = plus && minus ? `${plus} − ${minus}` : plus ? `${plus} − rest` : `rest − ${minus}`;
-  return name.slice(0, 120);
+  return cut(name, 120);
 }

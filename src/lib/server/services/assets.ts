@@ -58,7 +58,9 @@ const plainName = (name: string) =>
   name
     .replace(/^.*[/\\]/, '')
     .replace(/\p{Cc}/gu, '')
-    .slice(-200) || 'picture';
+    .slice(-200)
+    // Half a character at the cut is no text.
+    .replace(/^[\uDC00-\uDFFF]/, '') || 'picture';
 
 /**
  * Take in one picture from a multipart form: field `file`, and optionally `note` and `redistributable` before it.

@@ -10,6 +10,7 @@ import {
   reportOver,
   spectrumOf
 } from '../../../../src/lib/editor/spectrum/figures';
+import { saturationPreview } from '../../../../src/lib/editor/spectrum/saturation';
 import { duplicateRun } from '../../../../src/lib/task/commands';
 import { defaultProfile } from '../../../../src/lib/task/profile';
 import { sampleTask, withTrials } from '../../task/sample';
@@ -84,6 +85,24 @@ describe('spectrum and power figures', () => {
     expect(blockLengths({ ...doc, brief: { ...doc.brief } }, { ...run, volumes: 4 }, profile)).toBeNull();
     const best = blockLengths(doc, run, profile)!;
     expect(best.efficiencies.some((e) => e.length === best.length)).toBe(true);
+  });
+});
+
+describe('preview of mild saturation', () => {
+  it('one isolated event peaks at 1 in both; two close events add to less than their sum', () => {
+    const single = withTrials(sample, [['lantern', 3]]);
+    const lone = saturationPreview(single, single.runs[0]!)!;
+    // Sampled every half second, so a little below the exact peak; the balloon model is scaled by such samples.
+    expect(Math.max(...lone.added)).toBeCloseTo(1, 1);
+    expect(Math.max(...lone.saturated)).toBeCloseTo(1, 1);
+    const close = withTrials(sample, [
+      ['lantern', 3],
+      ['chime', 5],
+      ['lantern', 7]
+    ]);
+    const own = saturationPreview(close, close.runs[0]!)!;
+    expect(Math.max(...own.saturated)).toBeLessThan(Math.max(...own.added));
+    expect(saturationPreview(sample.doc, sample.doc.runs[0]!)).toBeNull();
   });
 });
 
