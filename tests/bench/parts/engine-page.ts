@@ -22,6 +22,8 @@ const DURATION = 1.5;
 export interface PageFigures {
   /** Milliseconds of each preview. */
   previews: number[];
+  /** Milliseconds of moving the trial in the drawn curve and the sampled column alone, each a mean over twenty moves. */
+  signals: number[];
   /** Milliseconds of rebuilding all four convolutions on the 0.1 s grid. */
   rebuilds: number[];
 }
@@ -84,12 +86,23 @@ export function measure(
     previews.push(performance.now() - start);
     here = there;
   }
+  // A page's clock steps by 0.1 ms: twenty moves are timed at once.
+  const signals = Array.from({ length: 40 }, () => {
+    const start = performance.now();
+    for (let i = 0; i < 20; i += 1) {
+      const there = { ...here, onset: 150 + ((i * 7) % 100) / 10 };
+      drawn[0]!.move(here, there);
+      sampled[0]!.move(here, there);
+      here = there;
+    }
+    return (performance.now() - start) / 20;
+  });
   const rebuilds = Array.from({ length: 15 }, () => {
     const start = performance.now();
     for (const events of conditions) convolveOnGrid(events, h, SECONDS);
     return performance.now() - start;
   });
-  return { previews, rebuilds };
+  return { previews, signals, rebuilds };
 }
 
 /** One point for every half second of the curve, as on the Page. */
